@@ -1,0 +1,77 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later */
+#ifndef EVENGAP_OUTPUT_PICTURE_H
+#define EVENGAP_OUTPUT_PICTURE_H
+
+/* Pieces that pictures of a plane share: an equal-scale frame in millimetres, rasters,
+ * and the outlines of the parts. Colours run from white to a middle blue, so that they
+ * keep their order in grey; parts are darker than any of them. */
+
+#include "mesh/geometry.h"
+#include "output/gnuplot.h"
+#include "shared/attributes.h"
+#include "shared/status.h"
+
+#define PICTURE_PART_GREY 112 /* of 255 */
+
+/* A window of a plane and the size of its picture. */
+struct frame {
+    struct vec2 low, high; /* m */
+    const char *axis_a;    /* "z" */
+    const char *axis_b;    /* "x" */
+    int width, height;     /* pixels of the whole picture */
+    double left, right;    /* edges of the axes as fractions of the width */
+    double bottom, top;    /* the same of the height */
+};
+
+/* Values on a regular raster, pixel (i, j) centred at low + ((i+1/2) da, (j+1/2) db). */
+struct raster {
+    int na, nb;
+    struct vec2 low, pixel; /* m */
+    double *values;         /* [nb*na], a fastest */
+};
+
+/** Frame of a window; `right` pixels are kept free right of the axes and `bottom`
+ *  more than usual below them. */
+struct frame picture_frame(struct vec2 low, struct vec2 high, const char *axis_a,
+                           const char *axis_b, int right, int bottom);
+
+/** Prints title, ranges, axis labels with units and equal scales. */
+void picture_axes(struct sink *script, const struct frame *frame, const char *title);
+
+/** Raster over the window of the frame, zero everywhere. STATUS_MEMORY. */
+enum status raster_init(struct raster *raster, const struct frame *frame) MUST_CHECK;
+
+/** Fills from values[nb*na] on the lines a[na], b[nb], linear between them. */
+void raster_sample(struct raster *raster, const double *a, int na, const double *b,
+                   int nb, const double *values);
+
+/** Sets 1 in every pixel whose centre lies in a part of the plane. STATUS_MEMORY. */
+enum status raster_cover(struct raster *raster, const struct plane *plane) MUST_CHECK;
+
+/** Prints the raster as the gnuplot data block $name. */
+void raster_print(struct sink *script, const struct raster *raster, const char *name);
+
+/** Prints `$name matrix using <a in mm>:<b in mm>`. */
+void raster_using(struct sink *script, const struct raster *raster, const char *name);
+
+/** Empties; safe on zeroed and twice. */
+void raster_free(struct raster *raster);
+
+/** Prints the remaining surface of every part as polylines in mm, data block
+ *  $outlines. There is at least one line in the block. */
+void picture_outlines(struct sink *script, const struct plane *plane);
+
+/** Prints labels with the names of the parts, moved apart where they would meet. */
+void picture_names(struct sink *script, const struct plane *plane,
+                   const struct frame *frame);
+
+/** A step of 1, 2 or 5 times a power of ten that divides span into at most `most`
+ *  pieces; 1 if span is not positive. */
+double picture_step(double span, int most);
+
+/** Prints the data block $levels: lines of equal value of data block $name, every
+ *  `step` from the first multiple at or above low to high. */
+void picture_levels(struct sink *script, const struct raster *raster, const char *name,
+                    double low, double high, double step);
+
+#endif

@@ -1,0 +1,245 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later */
+
+/* The ratio error spans decades: flat in the middle, of order one in the fringe. Its
+ * panel is scaled to what is judged (the limit, or the stretch where both fields are
+ * nearly full) and says so where the curve leaves it. */
+
+#include "output/plot_path.h"
+
+#include <math.h>
+#include <string.h>
+
+#include "output/gnuplot.h"
+#include "output/words.h"
+
+#define WIDTH        920
+#define PARTS_HEIGHT 90.0 /* pixels */
+#define PANEL_HEIGHT 230.0
+#define GAP          24.0
+#define TOP          50.0
+#define BOTTOM       70.0
+#define LEFT         0.13 /* of the width */
+#define RIGHT        0.96
+#define FULL_FIELD   0.9 /* both fields above this share of centre: ratio is judged */
+#define LIMIT_VIEW   3.0 /* limits shown on either side */
+
+/* Which panels there are and how much of the height is used up. */
+struct panels {
+    const struct result *result;
+    int height;  /* pixels of the whole picture */
+    double used; /* pixels from the top */
+    int left;    /* panels still to come */
+    double e_reference, b_reference;
+};
+
+static size_t reference_index(const struct result *result)
+{
+    const struct profile *profile = &result->profile;
+    double z = result->geometry->has_reference ? result->geometry->reference_z : 0;
+    size_t best = 0;
+    for (size_t k = 1; k < profile->count; k++)
+        if (fabs(profile->z[k] - z) < fabs(profile->z[best] - z))
+            best = k;
+    return best;
+}
+
+static void print_value(struct sink *script, const double *values, size_t k,
+                        double scale, bool shown)
+{
+    if (values && shown && isfinite(values[k] * scale))
+        sink_print(script, " %.9g", values[k] * scale);
+    else
+        sink_print(script, " NaN");
+}
+
+/* Columns: 1 z (mm), 2 E_x, 3 B_y (relative), 4 imbalance, 5 ratio error, 6 its
+ * uncertainty, 7 and 8 lowest and highest over the footprint. */
+static void print_data(struct sink *script, const struct panels *panels)
+{
+    const struct profile *profile = &panels->result->profile;
+    double e = panels->e_reference, b = panels->b_reference;
+    sink_print(script, "$path << EOD\n");
+    for (size_t k = 0; k < profile->count; k++) {
+        bool ratio = profile->defined && profile->defined[k];
+        sink_print(script, "%.9g", profile->z[k] * 1e3);
+        print_value(script, profile->e_x, k, 1 / e, e != 0);
+        print_value(script, profile->b_y, k, 1 / b, b != 0);
+        print_value(script, profile->imbalance, k, 1, true);
+        print_value(script, profile->ratio_error, k, 1, ratio);
+        print_value(script, profile->ratio_error_err, k, 1, ratio);
+        print_value(script, profile->bundle_low, k, 1, ratio && profile->has_bundle);
+        print_value(script, profile->bundle_high, k, 1, ratio && profile->has_bundle);
+        sink_print(script, "\n");
+    }
+    sink_print(script, "EOD\n");
+}
+
+/* Starts a panel of the given height; only the last one carries the z axis. */
+static void open_panel(struct sink *script, struct panels *panels, double height,
+                       const char *label)
+{
+    double top = panels->used, bottom = top + height;
+    panels->used = bottom + GAP;
+    panels->left--;
+    sink_print(script, "set tmargin at screen %.6f\nset bmargin at screen %.6f\n",
+               1 - top / panels->height, 1 - bottom / panels->height);
+    if (panels->left == 0)
+        sink_print(script, "set xlabel 'z (mm)'\nset format x '%%g'\n");
+    else
+        sink_print(script, "unset xlabel\nset format x ''\n");
+    sink_print(script, "set ylabel ");
+    plot_quote(script, label);
+    sink_print(script, "\nset autoscale y\n");
+}
+
+/* One bar per part of a plane, on the row of the plane. */
+static void print_bars(struct sink *script, const struct plane *plane, double row,
+                       int *object)
+{
+    for (size_t k = 0; k < plane->part_count; k++) {
+        static const char *const fills[] = {
+            [PART_ELECTRODE] = "fc rgb '#606060' fs solid",
+            [PART_GUARD] = "fc rgb '#ffffff' fs solid",
+            [PART_CLAMP] = "fc rgb '#606060' fs pattern 4",
+            [PART_POLE] = "fc rgb '#b0b0b0' fs solid",
+        };
+        struct vec2 low, high;
+        shape_bounds(&plane->parts[k].shape, &low, &high);
+        sink_print(script,
+                   "set object %d rectangle from %.9g,%.9g to %.9g,%.9g %s border "
+                   "lc 'black'\n",
+                   (*object)++, low.a * 1e3, row - 0.3, high.a * 1e3, row + 0.3,
+                   fills[plane->parts[k].kind]);
+    }
+}
+
+static void plot_extents(struct sink *script, struct panels *panels)
+{
+    const struct geometry *geometry = panels->result->geometry;
+    int object = 1;
+    open_panel(script, panels, PARTS_HEIGHT, "");
+    print_bars(script, &geometry->planes[PLANE_ELECTRIC_ALONG], 2, &object);
+    print_bars(script, &geometry->planes[PLANE_MAGNETIC_ALONG], 1, &object);
+    sink_print(script, "set title 'Along the path: electrode dark, pole light, guard "
+                       "white, clamp hatched'\n");
+    sink_print(script, "set yrange [0.5:2.5]\nset ytics ('electric' 2, 'magnetic' 1)\n"
+                       "plot NaN notitle\n");
+    for (int k = 1; k < object; k++)
+        sink_print(script, "unset object %d\n", k);
+    sink_print(script, "unset title\nset ytics autofreq\n");
+}
+
+static void plot_fields(struct sink *script, struct panels *panels)
+{
+    const struct profile *profile = &panels->result->profile;
+    open_panel(script, panels, PANEL_HEIGHT, "field / field at reference");
+    sink_print(script, "set key bottom center\nplot ");
+    if (profile->e_x)
+        sink_print(script,
+                   "$path using 1:2 with lines lw 2 lc 'black' title "
+                   "'E_x / E_x(reference)'%s",
+                   profile->b_y ? ", " : "\n");
+    if (profile->b_y)
+        sink_print(script, "$path using 1:3 with lines lw 2.5 dt (8,5) lc '#3070b0' "
+                           "title 'B_y / B_y(reference)'\n");
+}
+
+static void plot_imbalance(struct sink *script, struct panels *panels)
+{
+    open_panel(script, panels, PANEL_HEIGHT, "force imbalance (1)");
+    sink_print(script, "set key top center\n"
+                       "plot 0 with lines lc '#909090' notitle, "
+                       "$path using 1:4 with lines lw 2 lc 'black' title "
+                       "'(E_x - u B_y) / E_x(reference), u the reference speed'\n");
+}
+
+/* Half height of the ratio panel. */
+static double ratio_view(const struct panels *panels)
+{
+    const struct profile *profile = &panels->result->profile;
+    const struct limit *limit = &panels->result->geometry->limits[LIMIT_RATIO_ERROR];
+    if (limit->present)
+        return LIMIT_VIEW * limit->value;
+    double full = 0, all = 0;
+    for (size_t k = 0; k < profile->count; k++) {
+        if (!profile->defined[k])
+            continue;
+        double size = fabs(profile->ratio_error[k]);
+        all = fmax(all, size);
+        if (fabs(profile->e_x[k] / panels->e_reference) > FULL_FIELD &&
+            fabs(profile->b_y[k] / panels->b_reference) > FULL_FIELD)
+            full = fmax(full, size);
+    }
+    double view = 1.2 * (full > 0 ? full : all);
+    return view > 0 ? view : 1e-6;
+}
+
+static void plot_ratio(struct sink *script, struct panels *panels)
+{
+    const struct profile *profile = &panels->result->profile;
+    const struct limit *limit = &panels->result->geometry->limits[LIMIT_RATIO_ERROR];
+    double view = ratio_view(panels);
+    open_panel(script, panels, PANEL_HEIGHT, "ratio error (1)");
+    sink_print(script,
+               "set yrange [%.6g:%.6g]\nset format y '%%.1e'\nset key top "
+               "center\n",
+               -view, view);
+    sink_print(script, "plot 0 with lines lc '#909090' notitle");
+    if (profile->has_bundle)
+        sink_print(script, ", $path using 1:7:8 with filledcurves fc rgb '#c4d6e8' title "
+                           "'range over the footprint'");
+    sink_print(script, ", $path using 1:5 with lines lw 2 lc 'black' title "
+                       "'on the axis (cut off beyond the panel)'");
+    if (limit->present)
+        sink_print(script,
+                   ", %.9g with lines lw 1.5 dt (4,4) lc 'black' title 'limit', "
+                   "%.9g with lines lw 1.5 dt (4,4) lc 'black' notitle",
+                   limit->value, -limit->value);
+    sink_print(script, "\n");
+}
+
+static void print_panels(struct sink *script, struct panels *panels)
+{
+    const struct profile *profile = &panels->result->profile;
+    print_data(script, panels);
+    sink_print(script,
+               "set multiplot\nset lmargin at screen %g\nset rmargin at screen "
+               "%g\n",
+               LEFT, RIGHT);
+    sink_print(script, "set xrange [%.9g:%.9g]\nset tics out nomirror\nset samples 2\n",
+               profile->z[0] * 1e3, profile->z[profile->count - 1] * 1e3);
+    sink_print(script, "set grid x lc '#d8d8d8' dt 1\n");
+    plot_extents(script, panels);
+    plot_fields(script, panels);
+    if (profile->imbalance)
+        plot_imbalance(script, panels);
+    if (profile->ratio_error)
+        plot_ratio(script, panels);
+    sink_print(script, "unset multiplot\n");
+}
+
+enum status plot_path(struct folder *folder, const struct result *result, bool *drawn,
+                      struct messages *messages)
+{
+    const struct profile *profile = &result->profile;
+    *drawn = false;
+    if (!profile->present || profile->count < 2 || !(profile->e_x || profile->b_y))
+        return STATUS_OK;
+    int count = 1 + (profile->imbalance != NULL) + (profile->ratio_error != NULL);
+    size_t k = reference_index(result);
+    struct panels panels = {
+        .result = result,
+        .height = (int)(TOP + PARTS_HEIGHT + count * (GAP + PANEL_HEIGHT) + BOTTOM),
+        .used = TOP,
+        .left = 1 + count,
+        .e_reference = profile->e_x ? profile->e_x[k] : 0,
+        .b_reference = profile->b_y ? profile->b_y[k] : 0,
+    };
+    struct plot plot;
+    enum status status =
+        plot_begin(&plot, folder, "path.svg", WIDTH, panels.height, messages);
+    if (status)
+        return status;
+    print_panels(&plot.script, &panels);
+    return plot_end(&plot, folder, drawn, messages);
+}

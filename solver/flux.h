@@ -1,0 +1,22 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later */
+#ifndef EVENGAP_SOLVER_FLUX_H
+#define EVENGAP_SOLVER_FLUX_H
+
+/* Flux of the potential's gradient out of every part and side, by Gauss's theorem on
+ * contours that cross uncut links only. Per metre of depth; times eps0 it is a charge
+ * per metre, times mu0 a flux per metre. */
+
+#include "mesh/grid.h"
+#include "shared/attributes.h"
+#include "shared/status.h"
+#include "solver/stencil.h"
+
+/** part[part_count] and side[SIDE_COUNT]: outward flux of -grad phi (unit of phi) out of
+ *  each; imbalance: |sum| / sum of absolute values, 0 without any flux. Symmetry sides
+ *  of kind mirror have none. STATUS_MEMORY.
+ *  Order  2 on graded grids (the contour's distance from the surface does not matter:
+ *         the difference equation of uncut nodes conserves flux exactly). */
+enum status flux_measure(const struct grid *grid, const double *phi, double *part,
+                         double side[SIDE_COUNT], double *imbalance) MUST_CHECK;
+
+#endif

@@ -1,0 +1,235 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later */
+
+#include "solver/plane_solution.h"
+
+#include <math.h>
+#include <string.h>
+#include <time.h>
+
+#include "shared/constants.h"
+#include "shared/mem.h"
+#include "solver/flux.h"
+#include "solver/system.h"
+
+/* A solve is trusted within these; both are of the size of round-off, with room for the
+ * condition of graded grids. */
+#define RESIDUAL_TRUSTED 1e-9
+#define RCOND_TRUSTED    1e-15
+#define BALANCE_TRUSTED  1e-6
+
+static double seconds_now(void)
+{
+    struct timespec t;
+    clock_gettime(CLOCK_MONOTONIC, &t);
+    return (double)t.tv_sec + 1e-9 * (double)t.tv_nsec;
+}
+
+double plane_field_factor(enum plane_kind kind)
+{
+    return plane_kind_is_magnetic(kind) ? -VACUUM_PERMEABILITY : -1.0;
+}
+
+/* Share of a potential that column `column` drives: a gain, or the constant. */
+static double column_value(const struct linear *potential, size_t column,
+                           size_t supplies)
+{
+    if (column == supplies)
+        return potential->constant;
+    return potential->gain != NULL ? potential->gain[column] : 0.0;
+}
+
+static void drive_of_column(const struct plane *plane, size_t column, size_t supplies,
+                            struct drive *drive)
+{
+    for (size_t p = 0; p < plane->part_count; p++)
+        drive->part[p] = column_value(&plane->parts[p].potential, column, supplies);
+    for (int s = 0; s < SIDE_COUNT; s++) {
+        const struct side *side = &plane->sides[s];
+        const bool wall = side->kind == SIDE_WALL;
+        drive->side_from[s] = wall ? column_value(&side->from, column, supplies) : 0.0;
+        drive->side_to[s] = wall ? column_value(&side->to, column, supplies) : 0.0;
+    }
+}
+
+static bool drive_is_zero(const struct drive *drive, size_t parts)
+{
+    double size = 0.0;
+    for (size_t p = 0; p < parts; p++)
+        size += fabs(drive->part[p]);
+    for (int s = 0; s < SIDE_COUNT; s++)
+        size += fabs(drive->side_from[s]) + fabs(drive->side_to[s]);
+    return size == 0.0;
+}
+
+static enum status allocate(struct plane_solution *s)
+{
+    const size_t nodes = (size_t)s->grid.na * (size_t)s->grid.nb;
+    const size_t parts = s->plane->part_count;
+    s->unit = MEM_NEW(s->geometry->supply_count + 1, double *);
+    s->phi = MEM_NEW(nodes, double);
+    s->part_value = MEM_NEW(parts, double);
+    s->part_flux = MEM_NEW(parts, double);
+    if (s->unit == NULL || s->phi == NULL || s->part_value == NULL ||
+        s->part_flux == NULL)
+        return STATUS_MEMORY;
+    return STATUS_OK;
+}
+
+/* Unit potential of one column, added to the potential at the settings. */
+static enum status solve_column(struct plane_solution *s, const struct system *system,
+                                size_t column, struct drive *drive)
+{
+    const size_t supplies = s->geometry->supply_count;
+    const size_t nodes = (size_t)s->grid.na * (size_t)s->grid.nb;
+    const double setting =
+        column < supplies ? s->geometry->supplies[column].setting : 1.0;
+    double residual = 0.0;
+    drive_of_column(s->plane, column, supplies, drive);
+    if (drive_is_zero(drive, s->plane->part_count))
+        return STATUS_OK;
+    s->unit[column] = MEM_NEW(nodes, double);
+    if (s->unit[column] == NULL)
+        return STATUS_MEMORY;
+    enum status status = system_solve(system, drive, s->unit[column], &residual);
+    if (status != STATUS_OK)
+        return status;
+    for (size_t n = 0; n < nodes; n++)
+        s->phi[n] += setting * s->unit[column][n];
+    for (size_t p = 0; p < s->plane->part_count; p++)
+        s->part_value[p] += setting * drive->part[p];
+    s->quality.residual = fmax(s->quality.residual, residual);
+    return STATUS_OK;
+}
+
+/* Flux out of every part held at 1 with everything else at 0. */
+static enum status solve_self(struct plane_solution *s, const struct system *system,
+                              struct drive *drive)
+{
+    const size_t nodes = (size_t)s->grid.na * (size_t)s->grid.nb;
+    const size_t parts = s->plane->part_count;
+    double *phi = MEM_NEW(nodes, double), *flux = MEM_NEW(parts, double);
+    double side[SIDE_COUNT], imbalance;
+    s->self_flux = MEM_NEW(parts, double);
+    enum status status = phi != NULL && flux != NULL && s->self_flux != NULL
+                             ? STATUS_OK
+                             : STATUS_MEMORY;
+    for (int k = 0; k < SIDE_COUNT; k++)
+        drive->side_from[k] = drive->side_to[k] = 0.0;
+    for (size_t p = 0; p < parts && status == STATUS_OK; p++) {
+        for (size_t q = 0; q < parts; q++)
+            drive->part[q] = q == p ? 1.0 : 0.0;
+        status = system_solve(system, drive, phi, NULL);
+        if (status == STATUS_OK)
+            status = flux_measure(&s->grid, phi, flux, side, &imbalance);
+        if (status == STATUS_OK)
+            s->self_flux[p] = flux[p];
+    }
+    mem_free(phi);
+    mem_free(flux);
+    return status;
+}
+
+static enum status solve_all(struct plane_solution *s, const struct system *system)
+{
+    struct drive drive = {0};
+    drive.part = MEM_NEW(s->plane->part_count, double);
+    enum status status = drive.part != NULL ? STATUS_OK : STATUS_MEMORY;
+    for (size_t c = 0; c <= s->geometry->supply_count && status == STATUS_OK; c++)
+        status = solve_column(s, system, c, &drive);
+    if (status == STATUS_OK)
+        status = flux_measure(&s->grid, s->phi, s->part_flux, s->side_flux,
+                              &s->quality.flux_imbalance);
+    if (status == STATUS_OK && !plane_kind_is_magnetic(s->plane->kind))
+        status = solve_self(s, system, &drive);
+    mem_free(drive.part);
+    return status;
+}
+
+static enum status judge(const struct plane_solution *s, struct messages *messages)
+{
+    const struct quality *q = &s->quality;
+    if (q->residual <= RESIDUAL_TRUSTED && q->rcond >= RCOND_TRUSTED &&
+        q->flux_imbalance <= BALANCE_TRUSTED)
+        return STATUS_OK;
+    messages_add(messages, SEVERITY_ERROR, s->plane->place,
+                 "the solve of %s (%d unknowns) cannot be trusted: residual %.2g "
+                 "(expected at most %.0e), reciprocal condition %.2g (at least %.0e), "
+                 "flux balance %.2g (at most %.0e)",
+                 plane_kind_key(s->plane->kind), q->unknowns, q->residual,
+                 RESIDUAL_TRUSTED, q->rcond, RCOND_TRUSTED, q->flux_imbalance,
+                 BALANCE_TRUSTED);
+    return STATUS_UNTRUSTED;
+}
+
+static void explain(const struct plane_solution *s, enum status status,
+                    struct messages *messages)
+{
+    if (status == STATUS_SINGULAR || status == STATUS_MEMORY)
+        messages_add(messages, SEVERITY_ERROR, s->plane->place,
+                     "%s: %s while solving for %d unknowns on a grid of %d by %d nodes",
+                     plane_kind_key(s->plane->kind), status_text(status),
+                     s->grid.free_count, s->grid.na, s->grid.nb);
+}
+
+enum status plane_solve(const struct geometry *geometry, enum plane_kind kind,
+                        double fineness, int level, struct plane_solution *solution,
+                        struct messages *messages)
+{
+    const double start = seconds_now();
+    struct system *system = NULL;
+    struct system_facts facts = {0};
+    memset(solution, 0, sizeof *solution);
+    solution->geometry = geometry;
+    solution->plane = &geometry->planes[kind];
+    enum status status =
+        grid_build(solution->plane, fineness, level, geometry->memory_budget,
+                   &solution->grid, messages);
+    if (status != STATUS_OK)
+        return status;
+    status = allocate(solution);
+    if (status == STATUS_OK)
+        status = system_create(&solution->grid, &system, &facts);
+    solution->quality.unknowns = facts.unknowns;
+    solution->quality.rcond = facts.rcond;
+    solution->quality.memory = facts.memory;
+    if (status == STATUS_OK)
+        status = solve_all(solution, system);
+    system_destroy(&system);
+    if (status == STATUS_OK)
+        status = field_create(&solution->grid, solution->phi, solution->part_value,
+                              &solution->field);
+    if (status == STATUS_OK)
+        status = judge(solution, messages);
+    else
+        explain(solution, status, messages);
+    solution->quality.seconds = seconds_now() - start;
+    return status;
+}
+
+enum status plane_field(const struct plane_solution *solution, struct vec2 at,
+                        double field[2], int *part)
+{
+    struct field_value value;
+    const double factor = plane_field_factor(solution->plane->kind);
+    enum status status = field_at(solution->field, at, &value);
+    field[0] = factor * value.gradient.a;
+    field[1] = factor * value.gradient.b;
+    if (part != NULL)
+        *part = value.part;
+    return status;
+}
+
+void plane_solution_free(struct plane_solution *solution)
+{
+    field_destroy(&solution->field);
+    for (size_t c = 0; solution->unit != NULL && c <= solution->geometry->supply_count;
+         c++)
+        mem_free(solution->unit[c]);
+    mem_free(solution->unit);
+    mem_free(solution->phi);
+    mem_free(solution->part_value);
+    mem_free(solution->part_flux);
+    mem_free(solution->self_flux);
+    grid_free(&solution->grid);
+    memset(solution, 0, sizeof *solution);
+}

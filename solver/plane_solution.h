@@ -1,0 +1,52 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later */
+#ifndef EVENGAP_SOLVER_PLANE_SOLUTION_H
+#define EVENGAP_SOLVER_PLANE_SOLUTION_H
+
+/* One plane solved on one grid: one unit potential per supply (and one for constant
+ * potentials), superposed at the settings; fluxes; the interpolated field. */
+
+#include "mesh/geometry.h"
+#include "mesh/grid.h"
+#include "shared/attributes.h"
+#include "shared/message.h"
+#include "shared/status.h"
+#include "solver/field.h"
+#include "solver/result.h"
+
+/* Caller-owned; zeroed is empty. The geometry is borrowed. The struct must not move
+ * after plane_solve: the field points into it. */
+struct plane_solution {
+    const struct geometry *geometry;
+    const struct plane *plane;
+    struct grid grid;
+    struct quality quality;
+    double **unit;        /* [supply_count + 1][nb*na] potential for 1 V (1 A) of every
+                             supply, the last for the constant parts; NULL if nothing
+                             in the plane depends on it */
+    double *phi;          /* [nb*na] at the settings */
+    double *part_value;   /* [part_count] potential of every part at the settings */
+    double *part_flux;    /* [part_count] outward flux of -grad phi at the settings */
+    double side_flux[SIDE_COUNT];
+    double *self_flux;    /* [part_count] flux out of a part at 1 with all else at 0;
+                             electric planes only, else NULL */
+    struct field *field;
+};
+
+/** Grid, factorisation, unit potentials and superposition of the plane `kind` at
+ *  `level` of the family. STATUS_INPUT (grid_build), STATUS_SINGULAR and
+ *  STATUS_UNTRUSTED with a message that names the plane; STATUS_MEMORY. */
+enum status plane_solve(const struct geometry *geometry, enum plane_kind kind,
+                        double fineness, int level, struct plane_solution *solution,
+                        struct messages *messages) MUST_CHECK;
+
+/** E (V/m) or B (T) along (a, b) at a point; part (may be NULL) as field_at. */
+enum status plane_field(const struct plane_solution *solution, struct vec2 at,
+                        double field[2], int *part) MUST_CHECK;
+
+/** Factor from the gradient of the potential to the field: -1 for E, -mu0 for B. */
+double plane_field_factor(enum plane_kind kind);
+
+/** Empties; safe on zeroed and twice. */
+void plane_solution_free(struct plane_solution *solution);
+
+#endif

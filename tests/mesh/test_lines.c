@@ -1,0 +1,140 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later */
+#include "tests/support/assert_close.h"
+
+#include "mesh/lines.h"
+#include "shared/constants.h"
+#include "shared/mem.h"
+
+static const struct line_spacing SPACING = {11e-3, 7.3e-3, 80e-3};
+
+static const struct key_line KEYS[] = {
+    {-57.3e-3, 5.0 / 9.0, 0.0}, {57.3e-3, 5.0 / 9.0, 0.0}, {20e-3, 0.0, 0.0}};
+
+static void build(int level, double **lines, int *count)
+{
+    assert_int_equal(
+        lines_build(-0.15, 0.15, KEYS, 3, SPACING, 1e-9, level, lines, count),
+        STATUS_OK);
+}
+
+static void test_levels_nest_to_the_last_bit(void **state)
+{
+    (void)state;
+    double *coarse, *fine;
+    int n, m;
+    build(0, &coarse, &n);
+    build(1, &fine, &m);
+    assert_int_equal(m, 2 * n - 1);
+    for (int k = 0; k < n; k++)
+        assert_true(coarse[k] == fine[2 * k]);
+    mem_free(coarse);
+    mem_free(fine);
+}
+
+static void test_lines_increase_and_hold_the_keys(void **state)
+{
+    (void)state;
+    double *lines;
+    int n, found = 0;
+    build(2, &lines, &n);
+    for (int k = 1; k < n; k++)
+        assert_true(lines[k] > lines[k - 1]);
+    for (int k = 0; k < n; k++)
+        for (int i = 0; i < 3; i++)
+            found += lines[k] == KEYS[i].at;
+    assert_int_equal(found, 3);
+    assert_true(lines[0] == -0.15 && lines[n - 1] == 0.15);
+    mem_free(lines);
+}
+
+/* The distance of line k from a key grows as k^(1/(1 - mu)), here k^(9/4). */
+static void test_spacing_follows_the_power_law(void **state)
+{
+    (void)state;
+    double *lines;
+    int n, k = 0;
+    build(4, &lines, &n);
+    while (lines[k] != KEYS[1].at)
+        k++;
+    double ratio = (lines[k + 4] - lines[k]) / (lines[k + 2] - lines[k]);
+    assert_close(ratio, pow(2.0, 9.0 / 4.0), 1e-3, 0.0);
+    mem_free(lines);
+}
+
+static void test_symmetric_keys_give_symmetric_lines(void **state)
+{
+    (void)state;
+    double *lines;
+    int n;
+    assert_int_equal(lines_build(-0.15, 0.15, KEYS, 2, SPACING, 1e-9, 1, &lines, &n),
+                     STATUS_OK);
+    for (int k = 0; k < n; k++)
+        assert_close(lines[k], -lines[n - 1 - k], 0.0, 1e-14);
+    mem_free(lines);
+}
+
+static void test_close_keys_merge(void **state)
+{
+    (void)state;
+    const struct key_line pair[] = {{0.01, 0.5, 0.0}, {0.01 + 1e-12, 0.5, 0.0}};
+    double *lines;
+    int n;
+    assert_int_equal(lines_build(0.0, 0.03, pair, 2, SPACING, 1e-9, 0, &lines, &n),
+                     STATUS_OK);
+    for (int k = 1; k < n; k++)
+        assert_true(lines[k] - lines[k - 1] > 1e-9);
+    mem_free(lines);
+}
+
+static void test_corner_powers(void **state)
+{
+    (void)state;
+    assert_close(lines_corner_power(1.5 * PI), 5.0 / 9.0, 1e-15, 0.0);
+    assert_close(lines_corner_power(2.0 * PI), 2.0 / 3.0, 1e-15, 0.0);
+    assert_close(lines_corner_power(0.5 * PI), 0.0, 0.0, 0.0);
+}
+
+static void test_bad_input_is_refused(void **state)
+{
+    (void)state;
+    double *lines;
+    int n;
+    assert_int_equal(lines_build(1.0, 1.0, NULL, 0, SPACING, 0.0, 0, &lines, &n),
+                     STATUS_SIZE);
+    assert_int_equal(lines_build(0.0, (double)NAN, NULL, 0, SPACING, 0.0, 0, &lines, &n),
+                     STATUS_SIZE);
+    const struct line_spacing absurd = {1.0, 1e-30, 1.0};
+    assert_int_equal(lines_build(0.0, 1.0, KEYS, 3, absurd, 0.0, 0, &lines, &n),
+                     STATUS_SIZE);
+    assert_null(lines);
+}
+
+static void test_every_failed_allocation_is_reported(void **state)
+{
+    (void)state;
+    double *lines = NULL;
+    int n;
+    enum status status = STATUS_MEMORY;
+    for (long k = 1; status != STATUS_OK; k++) {
+        mem_fail_at(k);
+        status = lines_build(-0.15, 0.15, KEYS, 3, SPACING, 1e-9, 0, &lines, &n);
+        mem_fail_at(0);
+        assert_true(status == STATUS_OK || (status == STATUS_MEMORY && lines == NULL));
+    }
+    mem_free(lines);
+}
+
+int main(void)
+{
+    const struct CMUnitTest tests[] = {
+        cmocka_unit_test(test_levels_nest_to_the_last_bit),
+        cmocka_unit_test(test_lines_increase_and_hold_the_keys),
+        cmocka_unit_test(test_spacing_follows_the_power_law),
+        cmocka_unit_test(test_symmetric_keys_give_symmetric_lines),
+        cmocka_unit_test(test_close_keys_merge),
+        cmocka_unit_test(test_corner_powers),
+        cmocka_unit_test(test_bad_input_is_refused),
+        cmocka_unit_test(test_every_failed_allocation_is_reported),
+    };
+    return cmocka_run_group_tests(tests, NULL, NULL);
+}

@@ -1,0 +1,109 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later */
+
+#include <stdlib.h>
+#include <string.h>
+
+#include "output/sheet.h"
+#include "output/words.h"
+#include "tests/output/fixture.h"
+#include "tests/support/assert_close.h"
+
+static char *write_sheet(const struct result *result)
+{
+    struct capture capture;
+    capture_open(&capture);
+    sheet_write(&capture.sink, result);
+    capture_close(&capture);
+    return capture.text;
+}
+
+static void test_verdict_comes_before_the_figures(void **state)
+{
+    char *text = write_sheet(&((struct fixture *)*state)->result);
+    char *verdict = strstr(text, "Verdict: NOT within limits: 1 of 2 not met");
+    assert_non_null(verdict);
+    assert_true(verdict < strstr(text, "wanted speed"));
+    assert_non_null(strstr(text, "8.1(3)e-4"));
+    assert_non_null(strstr(text, "at most 1.5 mrad"));
+    assert_non_null(strstr(text, "the kick cannot be judged"));
+    free(text);
+}
+
+static void test_every_figure_is_there_in_practical_units(void **state)
+{
+    char *text = write_sheet(&((struct fixture *)*state)->result);
+    assert_non_null(strstr(text, "53.88712 km/s"));
+    assert_non_null(strstr(text, "53.798(3) km/s             1 3\n"));
+    assert_non_null(strstr(text, "fringe integral, E, exit"));
+    assert_non_null(strstr(text, "0.18(2) unsettled"));
+    assert_non_null(strstr(text, "2.170(11) mm"));
+    char *missing = strstr(text, "capacitance per length, upper plate");
+    assert_non_null(missing);
+    assert_non_null(strstr(missing, "missing"));
+    assert_non_null(strstr(missing, "needs plane electric_across"));
+    free(text);
+}
+
+static void test_lines_stay_within_88_columns(void **state)
+{
+    char *text = write_sheet(&((struct fixture *)*state)->result);
+    for (char *line = text; *line; line += strcspn(line, "\n") + 1)
+        assert_in_range(strcspn(line, "\n"), 0, 88);
+    free(text);
+}
+
+static void test_absent_plane_is_named_and_claims_nothing(void **state)
+{
+    struct fixture *fixture = *state;
+    fixture->result.planes[PLANE_MAGNETIC_ALONG].present = false;
+    char *text = write_sheet(&fixture->result);
+    fixture->result.planes[PLANE_MAGNETIC_ALONG].present = true;
+    assert_non_null(strstr(text, "3 magnetic_along: not in the file"));
+    assert_non_null(strstr(text, "1 electric_along (z, x), finest grid 41 by 31"));
+    assert_null(strstr(text, "endless along x"));
+    assert_non_null(strstr(text, "endless along y"));
+    free(text);
+}
+
+static void test_all_cautions_are_printed(void **state)
+{
+    char *text = write_sheet(&((struct fixture *)*state)->result);
+    static const char *const words[] = {"no safety case", "discharge", "0.5 mT",
+                                        "implants",       "X rays",    "Vacuum",
+                                        "codes",          "licensed"};
+    char *cautions = strstr(text, "\nCautions\n");
+    assert_non_null(cautions);
+    for (size_t k = 0; k < sizeof words / sizeof words[0]; k++)
+        assert_non_null(strstr(cautions, words[k]));
+    free(text);
+}
+
+static void test_verdict_words_cover_all_cases(void **state)
+{
+    (void)state;
+    struct verdict verdict = {.all_met = true};
+    char text[128];
+    words_verdict(&verdict, text, sizeof text);
+    assert_non_null(strstr(text, "no limits are given"));
+    verdict.count = 1;
+    verdict.items[0].met = true;
+    words_verdict(&verdict, text, sizeof text);
+    assert_string_equal(text, "the limit is met");
+    verdict.count = 3;
+    verdict.items[1].met = verdict.items[2].met = true;
+    words_verdict(&verdict, text, sizeof text);
+    assert_string_equal(text, "all 3 limits are met");
+}
+
+int main(void)
+{
+    const struct CMUnitTest tests[] = {
+        cmocka_unit_test(test_verdict_comes_before_the_figures),
+        cmocka_unit_test(test_every_figure_is_there_in_practical_units),
+        cmocka_unit_test(test_lines_stay_within_88_columns),
+        cmocka_unit_test(test_absent_plane_is_named_and_claims_nothing),
+        cmocka_unit_test(test_all_cautions_are_printed),
+        cmocka_unit_test(test_verdict_words_cover_all_cases),
+    };
+    return cmocka_run_group_tests(tests, fixture_setup, fixture_teardown);
+}
