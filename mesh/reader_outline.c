@@ -4,6 +4,7 @@
  * comment. */
 #include <ctype.h>
 #include <math.h>
+#include <stdio.h>
 #include <string.h>
 
 #include "mesh/expression.h"
@@ -119,13 +120,13 @@ static bool parse_lines(struct reader *reader, const struct node *name,
 static char *path_beside(const char *geometry_path, const char *name)
 {
     const char *slash = geometry_path != NULL ? strrchr(geometry_path, '/') : NULL;
-    size_t folder =
-        slash != NULL && name[0] != '/' ? (size_t)(slash - geometry_path) + 1 : 0;
-    char *path = mem_new(folder + strlen(name) + 1, 1);
-    if (path == NULL)
-        return NULL;
-    memcpy(path, geometry_path, folder);
-    memcpy(path + folder, name, strlen(name));
+    if (slash == NULL || name[0] == '/')
+        return mem_text(name);
+    int folder = (int)(slash - geometry_path) + 1;
+    size_t size = (size_t)folder + strlen(name) + 1;
+    char *path = mem_new(size, 1);
+    if (path != NULL)
+        (void)snprintf(path, size, "%.*s%s", folder, geometry_path, name);
     return path;
 }
 

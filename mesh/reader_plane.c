@@ -102,9 +102,9 @@ static void read_sides(struct reader *reader, const struct node *node,
     (void)reader_mapping(reader, node, "sides", keys);
     for (int k = 0; k < 2; k++) {
         const struct node *item = node_find(node, keys[k]);
+        struct side *low = &plane->sides[k == 0 ? SIDE_A_LOW : SIDE_B_LOW];
         if (item != NULL)
-            read_sides_of_axis(reader, item, plane->kind, &plane->sides[2 * k],
-                               &plane->sides[2 * k + 1]);
+            read_sides_of_axis(reader, item, plane->kind, low, low + 1);
     }
 }
 
@@ -115,6 +115,7 @@ static void read_plane(struct reader *reader, const struct node *node,
     const char *name = plane_kind_key(plane->kind);
     const struct node *region = node_find(node, "region");
     plane->present = true;
+    plane->supply_count = reader->geometry->supply_count;
     plane->place = node->place;
     (void)reader_mapping(reader, node, name, keys);
     if (region == NULL)

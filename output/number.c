@@ -132,7 +132,7 @@ void number_format(double value, double uncertainty, char *text, size_t size)
 void number_quantity(double value, double uncertainty, const char *unit, char *text,
                      size_t size)
 {
-    struct unit_choice choice = unit_choose(unit, value != 0 ? value : uncertainty);
+    struct unit_choice choice = unit_choose(unit, fmax(fabs(value), uncertainty));
     number_format(value / choice.factor, uncertainty / choice.factor, text, size);
     size_t used = strlen(text);
     if (*choice.name)

@@ -62,11 +62,11 @@ void picture_axes(struct sink *script, const struct frame *frame, const char *ti
                        "set palette defined (0 '#ffffff', 1 '#5f93c4')\n");
 }
 
-enum status raster_init(struct raster *raster, const struct frame *frame)
+enum status raster_init(struct raster *raster, const struct frame *frame, double grain)
 {
     struct vec2 size = vec2_sub(frame->high, frame->low);
     *raster = (struct raster){.low = frame->low};
-    double scale = fmin(AXES_WIDTH / size.a, AXES_HEIGHT / size.b);
+    double scale = fmin(AXES_WIDTH / size.a, AXES_HEIGHT / size.b) / grain;
     raster->na = (int)fmax(2, ceil(size.a * scale));
     raster->nb = (int)fmax(2, ceil(size.b * scale));
     raster->pixel = (struct vec2){size.a / raster->na, size.b / raster->nb};
@@ -102,6 +102,12 @@ void raster_sample(struct raster *raster, const double *a, int na, const double 
                 low + t * (high - low);
         }
     }
+}
+
+void raster_scale(struct raster *raster, double factor)
+{
+    for (size_t k = 0; k < (size_t)raster->na * (size_t)raster->nb; k++)
+        raster->values[k] *= factor;
 }
 
 static void cover_span(struct raster *raster, int j, struct span span)
@@ -142,7 +148,7 @@ void raster_print(struct sink *script, const struct raster *raster, const char *
     sink_print(script, "$%s << EOD\n", name);
     for (int j = 0; j < raster->nb; j++) {
         for (int i = 0; i < raster->na; i++)
-            sink_print(script, " %.6g",
+            sink_print(script, " %.7g",
                        raster->values[(size_t)j * (size_t)raster->na + (size_t)i]);
         sink_print(script, "\n");
     }
@@ -251,35 +257,43 @@ static double letters(const char *text)
     return count;
 }
 
+/* Where the name of a part would like to be: beside a thin part, on the side away from
+ * the middle of the window; inside a thick one. */
+static struct label name_label(const struct part *part, const struct frame *frame,
+                               double scale)
+{
+    struct vec2 low, high;
+    shape_bounds(&part->shape, &low, &high);
+    struct vec2 size = vec2_sub(frame->high, frame->low);
+    double half = letters(part->name) * LETTER_WIDTH / 2 + 6;
+    double x = (0.5 * (low.a + high.a) - frame->low.a) * scale;
+    double y = (0.5 * (low.b + high.b) - frame->low.b) * scale;
+    double thickness = (high.b - low.b) * scale, width = (high.a - low.a) * scale;
+    if (thickness < 1.5 * LETTER_LINE || width < 2 * half)
+        y += (y > 0.5 * size.b * scale ? 0.5 : -0.5) * (thickness + 1.4 * LETTER_LINE);
+    x = fmin(fmax(x, half), size.a * scale - half);
+    return (struct label){x, y, half};
+}
+
 void picture_names(struct sink *script, const struct plane *plane,
                    const struct frame *frame)
 {
     struct label placed[NAMES_MOST];
     size_t count = 0;
-    double width = (frame->right - frame->left) * frame->width;
-    double height = (frame->top - frame->bottom) * frame->height;
     struct vec2 size = vec2_sub(frame->high, frame->low);
-    double scale = fmin(width / size.a, height / size.b);
+    double scale = fmin(AXES_WIDTH / size.a, AXES_HEIGHT / size.b);
     for (size_t k = 0; k < plane->part_count && count < NAMES_MOST; k++) {
-        struct vec2 low, high;
-        shape_bounds(&plane->parts[k].shape, &low, &high);
-        struct vec2 middle = vec2_scale(vec2_add(low, high), 0.5);
-        const char *name = plane->parts[k].name;
-        struct label label = {(middle.a - frame->low.a) * scale,
-                              (middle.b - frame->low.b) * scale,
-                              letters(name) * LETTER_WIDTH / 2 + 4};
-        label.x = fmin(fmax(label.x, label.half_width), width - label.half_width);
+        struct label label = name_label(&plane->parts[k], frame, scale);
         if (!place_label(&label, placed, count, size.b * scale))
             continue;
         sink_print(script, "set label ");
-        plot_quote(script, name);
+        plot_quote(script, plane->parts[k].name);
         sink_print(script, " at %.9g,%.9g center front font ',12' boxed\n",
                    (frame->low.a + label.x / scale) * 1e3,
                    (frame->low.b + label.y / scale) * 1e3);
         placed[count++] = label;
     }
-    sink_print(script, "set style textbox opaque fc 'white' border lc '#909090' "
-                       "margins 0.6,0.6\n");
+    sink_print(script, "set style textbox opaque fc 'white' noborder margins 1.5,1\n");
 }
 
 double picture_step(double span, int most)

@@ -12,6 +12,7 @@
 #include "shared/status.h"
 
 #define PICTURE_PART_GREY 112 /* of 255 */
+#define PICTURE_MAP_GRAIN 2.0 /* smooth fields need fewer pixels than outlines */
 
 /* A window of a plane and the size of its picture. */
 struct frame {
@@ -38,12 +39,17 @@ struct frame picture_frame(struct vec2 low, struct vec2 high, const char *axis_a
 /** Prints title, ranges, axis labels with units and equal scales. */
 void picture_axes(struct sink *script, const struct frame *frame, const char *title);
 
-/** Raster over the window of the frame, zero everywhere. STATUS_MEMORY. */
-enum status raster_init(struct raster *raster, const struct frame *frame) MUST_CHECK;
+/** Raster over the window of the frame, zero everywhere; one of its pixels is `grain`
+ *  pixels of the picture wide. STATUS_MEMORY. */
+enum status raster_init(struct raster *raster, const struct frame *frame,
+                        double grain) MUST_CHECK;
 
 /** Fills from values[nb*na] on the lines a[na], b[nb], linear between them. */
 void raster_sample(struct raster *raster, const double *a, int na, const double *b,
                    int nb, const double *values);
+
+/** Multiplies every value. */
+void raster_scale(struct raster *raster, double factor);
 
 /** Sets 1 in every pixel whose centre lies in a part of the plane. STATUS_MEMORY. */
 enum status raster_cover(struct raster *raster, const struct plane *plane) MUST_CHECK;
@@ -61,7 +67,8 @@ void raster_free(struct raster *raster);
  *  $outlines. There is at least one line in the block. */
 void picture_outlines(struct sink *script, const struct plane *plane);
 
-/** Prints labels with the names of the parts, moved apart where they would meet. */
+/** Prints labels with the names of the parts: beside thin parts, inside thick ones,
+ *  moved apart where they would meet. */
 void picture_names(struct sink *script, const struct plane *plane,
                    const struct frame *frame);
 

@@ -7,7 +7,7 @@
 #include "output/plot_path.h"
 
 #include <math.h>
-#include <string.h>
+#include <stdio.h>
 
 #include "output/gnuplot.h"
 #include "output/words.h"
@@ -15,7 +15,7 @@
 #define WIDTH        920
 #define PARTS_HEIGHT 90.0 /* pixels */
 #define PANEL_HEIGHT 230.0
-#define GAP          24.0
+#define GAP          42.0 /* holds the key of the panel below */
 #define TOP          50.0
 #define BOTTOM       70.0
 #define LEFT         0.13 /* of the width */
@@ -89,7 +89,8 @@ static void open_panel(struct sink *script, struct panels *panels, double height
         sink_print(script, "unset xlabel\nset format x ''\n");
     sink_print(script, "set ylabel ");
     plot_quote(script, label);
-    sink_print(script, "\nset autoscale y\n");
+    sink_print(script, "\nset autoscale y\nset key at graph 1,1.01 right bottom "
+                       "horizontal maxrows 1 samplen 3\n");
 }
 
 /* One bar per part of a plane, on the row of the plane. */
@@ -129,11 +130,25 @@ static void plot_extents(struct sink *script, struct panels *panels)
     sink_print(script, "unset title\nset ytics autofreq\n");
 }
 
+/* Widens a range by the values relative to the reference. */
+static void widen(const double *values, size_t count, double reference, double *low,
+                  double *high)
+{
+    for (size_t k = 0; values && reference != 0 && k < count; k++) {
+        *low = fmin(*low, values[k] / reference);
+        *high = fmax(*high, values[k] / reference);
+    }
+}
+
 static void plot_fields(struct sink *script, struct panels *panels)
 {
     const struct profile *profile = &panels->result->profile;
-    open_panel(script, panels, PANEL_HEIGHT, "field / field at reference");
-    sink_print(script, "set key bottom center\nplot ");
+    double low = 0, high = 0;
+    widen(profile->e_x, profile->count, panels->e_reference, &low, &high);
+    widen(profile->b_y, profile->count, panels->b_reference, &low, &high);
+    open_panel(script, panels, PANEL_HEIGHT, "field / reference (1)");
+    sink_print(script, "set yrange [%.6g:%.6g]\n", low - 0.08, high + 0.08);
+    sink_print(script, "plot ");
     if (profile->e_x)
         sink_print(script,
                    "$path using 1:2 with lines lw 2 lc 'black' title "
@@ -147,10 +162,11 @@ static void plot_fields(struct sink *script, struct panels *panels)
 static void plot_imbalance(struct sink *script, struct panels *panels)
 {
     open_panel(script, panels, PANEL_HEIGHT, "force imbalance (1)");
-    sink_print(script, "set key top center\n"
+    sink_print(script, "set label 1 '(E_x - u B_y) / E_x(reference), u = E_x / B_y at "
+                       "the reference' at graph 1,1.06 right\n"
                        "plot 0 with lines lc '#909090' notitle, "
-                       "$path using 1:4 with lines lw 2 lc 'black' title "
-                       "'(E_x - u B_y) / E_x(reference), u the reference speed'\n");
+                       "$path using 1:4 with lines lw 2 lc 'black' notitle\n"
+                       "unset label 1\n");
 }
 
 /* Half height of the ratio panel. */
@@ -179,22 +195,24 @@ static void plot_ratio(struct sink *script, struct panels *panels)
     const struct profile *profile = &panels->result->profile;
     const struct limit *limit = &panels->result->geometry->limits[LIMIT_RATIO_ERROR];
     double view = ratio_view(panels);
-    open_panel(script, panels, PANEL_HEIGHT, "ratio error (1)");
-    sink_print(script,
-               "set yrange [%.6g:%.6g]\nset format y '%%.1e'\nset key top "
-               "center\n",
-               -view, view);
+    int power = (int)floor(log10(view));
+    double scale = pow(10, -power);
+    char label[64];
+    (void)snprintf(label, sizeof label, "ratio error (1e%d)", power);
+    open_panel(script, panels, PANEL_HEIGHT, label);
+    sink_print(script, "set yrange [%.6g:%.6g]\ns = %.6g\n", -view * scale,
+               view * scale, scale);
     sink_print(script, "plot 0 with lines lc '#909090' notitle");
     if (profile->has_bundle)
-        sink_print(script, ", $path using 1:7:8 with filledcurves fc rgb '#c4d6e8' title "
-                           "'range over the footprint'");
-    sink_print(script, ", $path using 1:5 with lines lw 2 lc 'black' title "
-                       "'on the axis (cut off beyond the panel)'");
+        sink_print(script, ", $path using 1:(s*$7):(s*$8) with filledcurves fc rgb "
+                           "'#c4d6e8' title 'footprint'");
+    sink_print(script, ", $path using 1:(s*$5) with lines lw 2 lc 'black' title "
+                       "'on the axis'");
     if (limit->present)
         sink_print(script,
                    ", %.9g with lines lw 1.5 dt (4,4) lc 'black' title 'limit', "
                    "%.9g with lines lw 1.5 dt (4,4) lc 'black' notitle",
-                   limit->value, -limit->value);
+                   limit->value * scale, -limit->value * scale);
     sink_print(script, "\n");
 }
 

@@ -93,9 +93,9 @@ enum status plot_plane_potential(struct folder *folder, enum plane_kind kind,
     struct raster map = {0}, cover = {0};
     struct plot plot = {0};
     const struct grid *grid = &result->grid;
-    enum status status = raster_init(&map, &frame);
+    enum status status = raster_init(&map, &frame, PICTURE_MAP_GRAIN);
     if (!status)
-        status = raster_init(&cover, &frame);
+        status = raster_init(&cover, &frame, 1);
     if (!status)
         status = raster_cover(&cover, plane);
     if (!status)
@@ -166,7 +166,7 @@ enum status plot_plane_grid(struct folder *folder, const struct plane *plane,
     struct frame frame = plane_frame(plane, PLAIN_RIGHT, GRID_BELOW);
     struct raster cover = {0};
     struct plot plot = {0};
-    enum status status = raster_init(&cover, &frame);
+    enum status status = raster_init(&cover, &frame, 1);
     if (!status)
         status = raster_cover(&cover, plane);
     if (!status)

@@ -15,6 +15,7 @@
 #define BELOW       40
 #define LEVELS_MOST 12
 #define TITLE_SIZE  160
+#define LABEL_POINT 45 /* of a line, in raster pixels from the edge of the map */
 
 static void find_range(const struct section *section, double *low, double *high)
 {
@@ -25,54 +26,64 @@ static void find_range(const struct section *section, double *low, double *high)
     }
 }
 
-static void print_circle(struct sink *script, const struct result *result)
+/* The circle as far as it lies in the map; it may be larger than the footprint. */
+static void print_circle(struct sink *script, const struct result *result,
+                         const struct frame *frame)
 {
     const struct figure *radius = figures_find(&result->figures, "even_radius", NULL);
-    bool known = radius && radius->state != FIGURE_MISSING && radius->value > 0;
-    const struct geometry *geometry = result->geometry;
-    char text[NUMBER_TEXT];
-    if (!known)
+    if (!radius || radius->state == FIGURE_MISSING || !(radius->value > 0))
         return;
+    double x = result->geometry->reference_x, y = result->geometry->reference_y;
+    double reach = fmin(fmin(x - frame->low.a, frame->high.a - x),
+                        fmin(y - frame->low.b, frame->high.b - y));
+    char text[NUMBER_TEXT];
     number_quantity(radius->value, radius->uncertainty, "m", text, sizeof text);
+    if (radius->value < 1.5 * reach)
+        sink_print(script,
+                   "set object 1 circle at %.9g,%.9g size %.9g front fs empty border "
+                   "lc 'black' lw 2.5 dt (10,4)\n",
+                   x * 1e3, y * 1e3, radius->value * 1e3);
     sink_print(script,
-               "set object 1 circle at %.9g,%.9g size %.9g front fs empty border lc "
-               "'black' lw 2.5 dt (10,4)\n",
-               geometry->reference_x * 1e3, geometry->reference_y * 1e3,
-               radius->value * 1e3);
-    sink_print(script,
-               "set label 'long dashes: circle of even radius %s' at graph 0, screen 0 "
-               "offset 0,1 left font ',12'\n",
-               text);
+               "set label 2 '%s even radius %s%s' at graph 0, screen 0 offset 0,1 left "
+               "font ',12'\n",
+               radius->value < 1.5 * reach ? "long dashes: circle of" : "circle of",
+               text, radius->value < reach ? "" : " (reaches beyond this map)");
 }
 
+/* Map with its values in units of 10^power, so that ticks and labels stay short. */
 static void print_map(struct sink *script, const struct result *result,
-                      const struct frame *frame, const struct raster *map)
+                      const struct frame *frame, struct raster *map)
 {
     double low, high;
     find_range(&result->section, &low, &high);
-    double step = picture_step(high - low, LEVELS_MOST);
+    double most = fmax(fabs(low), fabs(high));
+    int power = most > 0 ? (int)floor(log10(most)) : 0;
+    double scale = pow(10, -power), step = picture_step(high - low, LEVELS_MOST);
     char title[TITLE_SIZE], step_text[NUMBER_TEXT];
     number_plain(step, 3, step_text, sizeof step_text);
-    (void)snprintf(title, sizeof title, "ratio error across, a line every %s",
+    (void)snprintf(title, sizeof title,
+                   "ratio error across, a line every %s, dotted "
+                   "where negative",
                    step_text);
+    raster_scale(map, scale);
     raster_print(script, map, "map");
-    picture_levels(script, map, "map", low, high, step);
+    picture_levels(script, map, "map", low * scale, high * scale, step * scale);
     picture_axes(script, frame, title);
-    sink_print(script,
-               "set cblabel 'ratio error (1)' offset 2\nset format cb '%%.1e'\n");
+    sink_print(script, "set cblabel 'ratio error (1e%d)'\n", power);
     if (high > low)
-        sink_print(script, "set cbrange [%.9g:%.9g]\n", low, high);
-    print_circle(script, result);
-    sink_print(script, "plot ");
+        sink_print(script, "set cbrange [%.9g:%.9g]\n", low * scale, high * scale);
+    print_circle(script, result, frame);
+    sink_print(script, "set style textbox opaque fc 'white' noborder margins 1,0.6\n"
+                       "plot ");
     raster_using(script, map, "map");
-    sink_print(
-        script,
-        ":3 with image notitle, "
-        "$levels using 1:($3>=0?$2:NaN) with lines lc 'black' lw 1 notitle, "
-        "$levels using 1:($3<0?$2:NaN) with lines lc 'black' lw 1 dt (3,3) "
-        "notitle, "
-        "$levels using 1:2:(sprintf('%%.1e',$3)) every 400::200 with labels font "
-        "',11' notitle\n");
+    sink_print(script,
+               ":3 with image notitle, "
+               "$levels using 1:($3>-1e-9?$2:NaN) with lines lc 'black' lw 1 notitle, "
+               "$levels using 1:($3<-1e-9?$2:NaN) with lines lc 'black' lw 1 dt (3,3) "
+               "notitle, "
+               "$levels using 1:2:(sprintf('%%.3g',$3)) every ::%d::%d with labels "
+               "boxed font ',11' notitle\n",
+               LABEL_POINT, LABEL_POINT);
 }
 
 enum status plot_section(struct folder *folder, const struct result *result,
@@ -88,7 +99,7 @@ enum status plot_section(struct folder *folder, const struct result *result,
     struct frame frame = picture_frame(low, high, "x", "y", COLOUR_BAR, BELOW);
     struct raster map = {0};
     struct plot plot = {0};
-    enum status status = raster_init(&map, &frame);
+    enum status status = raster_init(&map, &frame, PICTURE_MAP_GRAIN);
     if (!status)
         status = plot_begin(&plot, folder, "ratio_map.svg", frame.width, frame.height,
                             messages);

@@ -159,8 +159,8 @@ static void write_level(struct sink *sink, const struct quality *quality, int le
                         int levels)
 {
     sink_print(sink,
-               "      grid %d of %d: %9d unknowns, residual %.1e, "
-               "1/cond %.1e, flux sum %.1e\n",
+               "      grid %d of %d: %8d unknowns, residual %.1e, "
+               "1/cond %.1e, flux off %.1e\n",
                level + 1, levels, quality->unknowns, quality->residual, quality->rcond,
                quality->flux_imbalance);
 }

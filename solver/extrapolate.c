@@ -9,6 +9,9 @@
 #define LEAST_SHARE 0.03
 /* Safety factor on the last correction of the series. */
 #define SERIES_FACTOR 2.0
+/* A change that falls below this share of the one before (order 3 and more) is not a
+ * series yet. */
+#define FAST_SHARE 0.125
 /* Changes below this share of the scale never count as unsettled, whatever their order:
  * an uncertainty of DISORDER_FACTOR times the change says all there is to say. */
 #define SMALL_SHARE     1e-4
@@ -37,6 +40,12 @@ static struct estimate from_order(const double *v, double order, double noise)
     return (struct estimate){v[2] + rest, fabs(rest) + noise, order, true};
 }
 
+/* The coarsest grid was far off and says little: the last change bounds what is left. */
+static struct estimate from_last_change(const double *v, double order, double noise)
+{
+    return (struct estimate){v[2], fabs(v[2] - v[1]) + noise, order, true};
+}
+
 static struct estimate from_disorder(const double *v, double scale, double noise)
 {
     const double d1 = fabs(v[1] - v[0]), d2 = fabs(v[2] - v[1]);
@@ -56,9 +65,13 @@ struct estimate extrapolate(const double *values, int levels, double scale)
     if (fabs(d1) <= 10.0 * noise && fabs(d2) <= 10.0 * noise)
         return (struct estimate){values[2], fmax(fabs(d1), fabs(d2)) + noise, 0.0, true};
     const double order = d1 * d2 > 0.0 ? log2(d1 / d2) : 0.0;
+    if (fabs(d2) <= FAST_SHARE * fabs(d1))
+        return from_last_change(values, order, noise);
     if (order >= 1.5)
         return from_series(values, order, noise);
     if (order >= 0.5)
         return from_order(values, order, noise);
+    if (d1 * d2 < 0.0 && fabs(d2) <= 0.25 * fabs(d1))
+        return from_last_change(values, order, noise);
     return from_disorder(values, scale, noise);
 }

@@ -16,9 +16,12 @@ struct estimate {
 
 /** Estimate from values[levels], coarse to fine, 2 <= levels <= 3. scale (> 0) is the
  *  size against which changes are judged; 0 takes the largest |value|.
- *  Two grids: order 2 is assumed. Three: where the measured order is 1.5 or more, the
- *  error series h^2, h^3 of the graded grids is summed, and the change by its second
- *  term is the uncertainty; below that the measured order itself is used.
+ *  Two grids: order 2 is assumed. Three: where the measured order lies between 1.5 and
+ *  3, the error series h^2, h^3 of the graded grids is summed, and twice the change by
+ *  its second term is the uncertainty; below that the measured order itself is used;
+ *  above it, and where the changes alternate but fall fast, the finest value stands with
+ *  its last change as uncertainty. Changes that do not fall are unsettled unless they
+ *  are small.
  *  Source  Richardson (1911); Roache, J. Fluids Eng. 116, 405 (1994): safety factor 3
  *          where the order is assumed (from memory). */
 struct estimate extrapolate(const double *values, int levels, double scale);

@@ -8,6 +8,7 @@
 
 #include "shared/constants.h"
 #include "shared/mem.h"
+#include "solver/blame.h"
 #include "solver/flux.h"
 #include "solver/system.h"
 
@@ -145,6 +146,18 @@ static enum status solve_all(struct plane_solution *s, const struct system *syst
     return status;
 }
 
+/* Names the free space that fixed potentials hold least. */
+static void blame(const struct plane_solution *s, struct messages *messages)
+{
+    struct blame space;
+    if (blame_space(&s->grid, &space) != STATUS_OK)
+        return;
+    messages_add(messages, SEVERITY_NOTE, s->plane->place,
+                 "the free space round (%.6g, %.6g) mm, %d nodes, is the one that fixed "
+                 "potentials hold least (share of its legs that end on them: %.2g)",
+                 space.at.a * 1e3, space.at.b * 1e3, space.nodes, space.hold);
+}
+
 static enum status judge(const struct plane_solution *s, struct messages *messages)
 {
     const struct quality *q = &s->quality;
@@ -158,17 +171,19 @@ static enum status judge(const struct plane_solution *s, struct messages *messag
                  plane_kind_key(s->plane->kind), q->unknowns, q->residual,
                  RESIDUAL_TRUSTED, q->rcond, RCOND_TRUSTED, q->flux_imbalance,
                  BALANCE_TRUSTED);
+    blame(s, messages);
     return STATUS_UNTRUSTED;
 }
 
 static void explain(const struct plane_solution *s, enum status status,
                     struct messages *messages)
 {
-    if (status == STATUS_SINGULAR || status == STATUS_MEMORY)
-        messages_add(messages, SEVERITY_ERROR, s->plane->place,
-                     "%s: %s while solving for %d unknowns on a grid of %d by %d nodes",
-                     plane_kind_key(s->plane->kind), status_text(status),
-                     s->grid.free_count, s->grid.na, s->grid.nb);
+    messages_add(messages, SEVERITY_ERROR, s->plane->place,
+                 "%s: %s while solving for %d unknowns on a grid of %d by %d nodes",
+                 plane_kind_key(s->plane->kind), status_text(status),
+                 s->grid.free_count, s->grid.na, s->grid.nb);
+    if (status == STATUS_SINGULAR || status == STATUS_UNTRUSTED)
+        blame(s, messages);
 }
 
 enum status plane_solve(const struct geometry *geometry, enum plane_kind kind,

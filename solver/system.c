@@ -74,7 +74,8 @@ static enum status factor(struct system *system, struct system_facts *facts)
     double control[UMFPACK_CONTROL], info[UMFPACK_INFO];
     void *symbolic = NULL;
     umfpack_di_defaults(control);
-    /* The pattern is symmetric; the two orderings are compared by the benchmark. */
+    /* The pattern is symmetric. Measured on the model plates, 0.29 M unknowns: AMD takes
+     * 0.45 to 0.7 of the time of METIS and 1.3 of its memory. */
     control[UMFPACK_STRATEGY] = UMFPACK_STRATEGY_SYMMETRIC;
     control[UMFPACK_ORDERING] = UMFPACK_ORDERING_AMD;
     int code = umfpack_di_symbolic(system->unknowns, system->unknowns, system->start,
@@ -192,6 +193,8 @@ enum status system_solve(const struct system *system, const struct drive *drive,
     } else {
         load(system, drive, phi, right);
         umfpack_di_defaults(control);
+        if (residual == NULL)
+            control[UMFPACK_IRSTEP] = 0;
         status = status_of_umfpack(
             umfpack_di_solve(UMFPACK_At, system->start, system->column, system->value,
                              x, right, system->numeric, control, info));

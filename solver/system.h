@@ -27,8 +27,8 @@ enum status system_create(const struct grid *grid, struct system **system,
                           struct system_facts *facts) MUST_CHECK;
 
 /** Potential at all nodes, phi[nb*na] in the unit of the drive, fixed nodes included.
- *  residual (may be NULL): max over rows of |b - A x| / (|A||x| + |b|), 0 for a zero
- *  drive. STATUS_UNTRUSTED: a value is not finite. */
+ *  residual: max over rows of |b - A x| / (|A||x| + |b|), 0 for a zero drive; NULL
+ *  leaves out the iterative refinement (residual then about 1e-13 instead of 3e-16). STATUS_UNTRUSTED: a value is not finite. */
 enum status system_solve(const struct system *system, const struct drive *drive,
                          double *phi, double *residual) MUST_CHECK;
 

@@ -107,11 +107,11 @@ static void test_aliases_cannot_grow_without_bound(void **state)
 {
     char text[4000] = "a0: &a0 [x, x, x, x, x, x, x, x, x, x]\n";
     for (int k = 1; k < 9; k++) {
-        char line[200];
-        (void)snprintf(line, sizeof line,
-                       "a%d: &a%d [*a%d, *a%d, *a%d, *a%d, *a%d, *a%d]\n", k, k, k - 1,
-                       k - 1, k - 1, k - 1, k - 1, k - 1);
-        strcat(text, line);
+        size_t used = strlen(text);
+        int a = k - 1;
+        (void)snprintf(text + used, sizeof text - used,
+                       "a%d: &a%d [*a%d, *a%d, *a%d, *a%d, *a%d, *a%d]\n", k, k, a, a,
+                       a, a, a, a);
     }
     assert_refused(*state, text, 7, 9, "too many items");
 }

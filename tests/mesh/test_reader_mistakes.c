@@ -305,8 +305,10 @@ static void test_flood_of_mistakes_is_cut_off(void **state)
     (void)state;
     char text[4000] = "evengap: 1\nprobes:\n";
     struct messages messages = {0};
-    for (int k = 0; k < 200; k++)
-        strcat(text, "  - {x: 4}\n");
+    for (int k = 0; k < 200; k++) {
+        size_t used = strlen(text);
+        (void)snprintf(text + used, sizeof text - used, "  - {x: 4}\n");
+    }
     read_wrong(text, &messages);
     assert_int_equal(messages.errors, 40);
     assert_int_equal(messages.count, 41);
