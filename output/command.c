@@ -138,7 +138,7 @@ static void list_part(struct sink *sink, const struct geometry *geometry,
     shape_bounds(&part->shape, &low, &high);
     number_quantity(geometry_potential(geometry, &part->potential), 0,
                     magnetic ? "A" : "V", value, sizeof value);
-    sink_print(sink, "    %-10s %-24s %-12s %.6g..%.6g, %.6g..%.6g mm\n",
+    sink_print(sink, "    %-9s %-28s %-11s %.6g..%.6g, %.6g..%.6g mm\n",
                part_kind_key(part->kind), part->name, value, low.a * 1e3, high.a * 1e3,
                low.b * 1e3, high.b * 1e3);
 }

@@ -142,13 +142,13 @@ static enum status parse_fineness(const char *text, struct command *command,
 static enum status parse_grids(const char *text, struct command *command,
                                struct messages *messages)
 {
-    if (text[0] >= '1' && text[0] <= '0' + GRIDS_MOST && !text[1]) {
+    if (text[0] >= '0' + GRIDS_LEAST && text[0] <= '0' + GRIDS_MOST && !text[1]) {
         command->grids = text[0] - '0';
         return STATUS_OK;
     }
     messages_add(messages, SEVERITY_ERROR, (struct place){0, 0},
-                 "--grids takes a whole number from 1 to %d, not '%s'", GRIDS_MOST,
-                 text);
+                 "--grids takes a whole number from %d to %d, not '%s'", GRIDS_LEAST,
+                 GRIDS_MOST, text);
     return STATUS_INPUT;
 }
 

@@ -12,6 +12,7 @@
 
 #define FINENESS_LEAST 0.1
 #define FINENESS_MOST  20.0
+#define GRIDS_LEAST    2 /* one grid gives no uncertainty */
 #define GRIDS_MOST     3
 
 enum command_kind { COMMAND_RUN, COMMAND_DRAW, COMMAND_HELP, COMMAND_VERSION };

@@ -43,8 +43,8 @@ static const char run[] =
     ".result.\n" OUTPUT_HELP
     "  --fineness F     grid lines per axis relative to the default, 0.1 to 20;\n"
     "                   default: as the file says, else 1\n"
-    "  --grids N        grids of the family, 1 to 3; default 3. Fewer are quicker and\n"
-    "                   leave uncertainties that are not known\n"
+    "  --grids N        grids of the family, 2 or 3; default 3. Two are quicker, but\n"
+    "                   the order of convergence is then assumed, not measured\n"
     "  --quiet          no sheet and no progress; only messages and the exit status\n"
     "  --help           this text\n"
     "\n" EXIT_HELP;

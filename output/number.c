@@ -13,7 +13,8 @@
 #define FIXED_LOW   1e-3 /* below: exponent form */
 #define FIXED_HIGH  1e6  /* from here on: exponent form */
 #define DIGITS_MAX  9
-#define ROUND_GUARD 1e-6 /* keeps 2.0000000001 from being rounded up to 3 */
+#define NEGLIGIBLE  1e-290 /* an uncertainty below counts as none: 10^-lead overflows */
+#define ROUND_GUARD 1e-6   /* keeps 2.0000000001 from being rounded up to 3 */
 
 struct unit_row {
     const char *si;
@@ -52,6 +53,12 @@ struct unit_choice unit_choose(const char *unit, double magnitude)
     return (struct unit_choice){1, unit};
 }
 
+/* The unit of the table with factor 1, or the largest. */
+static struct unit_choice unit_plain(const char *unit)
+{
+    return unit_choose(unit, 1);
+}
+
 static int exponent_of(double x)
 {
     return (int)floor(log10(fabs(x)) + 1e-12);
@@ -81,9 +88,10 @@ void number_plain(double value, int digits, char *text, size_t size)
         (void)snprintf(text, size, "%.*g", digits > 6 ? digits : 6, value);
         return;
     }
-    int exponent = exponent_of(value);
-    (void)snprintf(text, size, "%.*g", digits, value * pow(10, -exponent));
-    add_exponent(text, size, exponent);
+    char *mark = strchr(rounded, 'e'); /* pow(10, 324) would overflow */
+    *mark = '\0';
+    (void)snprintf(text, size, "%.*g", digits, strtod(rounded, NULL));
+    add_exponent(text, size, (int)strtol(mark + 1, NULL, 10));
 }
 
 /* Decimals to show, and the uncertainty as a count of the last one. */
@@ -117,7 +125,7 @@ static void print_bracket(double value, double uncertainty, char *text, size_t s
 
 void number_format(double value, double uncertainty, char *text, size_t size)
 {
-    if (!isfinite(value) || !(uncertainty > 0) || !isfinite(uncertainty)) {
+    if (!isfinite(value) || !(uncertainty > NEGLIGIBLE) || !isfinite(uncertainty)) {
         number_plain(value, DIGITS_MAX, text, size);
         return;
     }
@@ -132,7 +140,10 @@ void number_format(double value, double uncertainty, char *text, size_t size)
 void number_quantity(double value, double uncertainty, const char *unit, char *text,
                      size_t size)
 {
-    struct unit_choice choice = unit_choose(unit, fmax(fabs(value), uncertainty));
+    double magnitude = fmax(fabs(value), uncertainty);
+    struct unit_choice choice = unit_choose(unit, magnitude);
+    if (magnitude == 0) /* an exact zero needs no small unit */
+        choice = unit_plain(unit);
     number_format(value / choice.factor, uncertainty / choice.factor, text, size);
     size_t used = strlen(text);
     if (*choice.name)

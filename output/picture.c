@@ -238,7 +238,8 @@ static bool place_label(struct label *label, const struct label *placed, size_t 
 {
     double home = label->y;
     for (int k = 0; k < 24; k++) {
-        label->y = home + (k % 2 ? 1 : -1) * ((k + 1) / 2) * LETTER_LINE;
+        int lines = (k % 2 ? 1 : -1) * ((k + 1) / 2);
+        label->y = home + lines * LETTER_LINE;
         bool free = label->y > LETTER_LINE / 2 && label->y < height - LETTER_LINE / 2;
         for (size_t q = 0; free && q < count; q++)
             free = !labels_meet(*label, placed[q]);

@@ -44,10 +44,10 @@ static size_t reference_index(const struct result *result)
 }
 
 static void print_value(struct sink *script, const double *values, size_t k,
-                        double scale, bool shown)
+                        double unit, bool shown)
 {
-    if (values && shown && isfinite(values[k] * scale))
-        sink_print(script, " %.9g", values[k] * scale);
+    if (values && shown && unit != 0 && isfinite(values[k] / unit))
+        sink_print(script, " %.9g", values[k] / unit);
     else
         sink_print(script, " NaN");
 }
@@ -62,8 +62,8 @@ static void print_data(struct sink *script, const struct panels *panels)
     for (size_t k = 0; k < profile->count; k++) {
         bool ratio = profile->defined && profile->defined[k];
         sink_print(script, "%.9g", profile->z[k] * 1e3);
-        print_value(script, profile->e_x, k, 1 / e, e != 0);
-        print_value(script, profile->b_y, k, 1 / b, b != 0);
+        print_value(script, profile->e_x, k, e, true);
+        print_value(script, profile->b_y, k, b, true);
         print_value(script, profile->imbalance, k, 1, true);
         print_value(script, profile->ratio_error, k, 1, ratio);
         print_value(script, profile->ratio_error_err, k, 1, ratio);

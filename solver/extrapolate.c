@@ -56,6 +56,9 @@ static struct estimate from_disorder(const double *v, double scale, double noise
 
 struct estimate extrapolate(const double *values, int levels, double scale)
 {
+    for (int k = 0; k < levels; k++)
+        if (!isfinite(values[k]))
+            return (struct estimate){values[levels - 1], INFINITY, 0.0, false};
     for (int k = 0; k < levels && scale == 0.0; k++)
         scale = fmax(scale, fabs(values[k]));
     const double noise = NOISE * scale;

@@ -21,7 +21,8 @@ struct estimate {
  *  its second term is the uncertainty; below that the measured order itself is used;
  *  above it, and where the changes alternate but fall fast, the finest value stands with
  *  its last change as uncertainty. Changes that do not fall are unsettled unless they
- *  are small.
+ *  are small. A value that is not finite gives an infinite uncertainty.
+ *  Values that are not finite are never settled.
  *  Source  Richardson (1911); Roache, J. Fluids Eng. 116, 405 (1994): safety factor 3
  *          where the order is assumed (from memory). */
 struct estimate extrapolate(const double *values, int levels, double scale);

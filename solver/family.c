@@ -44,6 +44,12 @@ static enum status combine_one(const struct figures *levels, int count, size_t k
     for (int l = 0; l < count; l++)
         values[l] = levels[l].items[k].value;
     const struct estimate e = extrapolate(values, count, figure.scale);
+    if (!isfinite(e.value) || !isfinite(e.uncertainty)) {
+        figure.state = FIGURE_MISSING;
+        figure.value = 0.0;
+        return figures_add(combined, &figure, finest->subject,
+                           "the computation gave no finite number");
+    }
     /* Figures from the input alone are the same on every grid and exact. */
     const bool exact = figure.planes == 0;
     figure.value = exact ? finest->value : e.value;

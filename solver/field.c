@@ -30,7 +30,9 @@ struct field {
     struct harmonic *fits; /* [fit_count] */
     int fit_count;
     int fit_capacity;
-    double *work; /* scratch of harmonic_fit */
+    double *work;         /* scratch of harmonic_fit */
+    struct span *spans;   /* scratch of line_is_clear */
+    size_t span_capacity;
 };
 
 /* A node of the region or of one of its reflections. */
@@ -221,14 +223,101 @@ static void blend_add(struct blend *blend, const struct harmonic *fit, struct ve
     blend->value_slope.b += slope.b * value + weight * gradient.b;
 }
 
-/* Adds corner (ci, cj) of cell (i, j) if the field can be fitted there. */
+/* True if no part lies on the grid-parallel stretch from t0 to t1 of the line b = at
+ * (axis 0) or a = at (axis 1). */
+static enum status line_is_clear(struct field *field, int axis, double at, double t0,
+                                 double t1, bool *clear)
+{
+    const struct plane *plane = field->grid->plane;
+    const double low = fmin(t0, t1), high = fmax(t0, t1);
+    const double size = vec2_length(vec2_sub(plane->high, plane->low));
+    enum status status = STATUS_OK;
+    *clear = true;
+    for (size_t p = 0; p < plane->part_count && *clear && status == STATUS_OK; p++) {
+        size_t count = 0;
+        status = shape_spans(&plane->parts[p].shape, axis, at, 1e-11 * size,
+                             &field->spans, &field->span_capacity, &count);
+        for (size_t k = 0; k < count && *clear; k++)
+            *clear = field->spans[k].low > high || field->spans[k].high < low;
+    }
+    return status;
+}
+
+/* True if a corner sees the point along one of the two grid-parallel ways round. */
+static enum status corner_sees(struct field *field, struct vec2 corner, struct vec2 at,
+                               bool *sees)
+{
+    bool first, second = false;
+    enum status status = line_is_clear(field, 0, corner.b, corner.a, at.a, &first);
+    if (status == STATUS_OK && first)
+        status = line_is_clear(field, 1, at.a, corner.b, at.b, &second);
+    *sees = first && second;
+    if (status != STATUS_OK || *sees)
+        return status;
+    status = line_is_clear(field, 1, corner.a, corner.b, at.b, &first);
+    if (status == STATUS_OK && first)
+        status = line_is_clear(field, 0, at.b, corner.a, at.a, &second);
+    *sees = first && second;
+    return status;
+}
+
+/* Free corners of cell (i, j) that are joined by whole edges of the cell carry the same
+ * group number; group[c] is -1 at fixed corners. Returns the number of groups. */
+static int corner_groups(const struct grid *grid, int i, int j, int group[4])
+{
+    static const int edges[4][2] = {{0, 1}, {2, 3}, {0, 2}, {1, 3}};
+    static const enum leg legs[4] = {LEG_EAST, LEG_EAST, LEG_NORTH, LEG_NORTH};
+    int node[4], count = 0;
+    for (int c = 0; c < 4; c++) {
+        node[c] = (j + (c >> 1)) * grid->na + i + (c & 1);
+        group[c] = passable(grid, node[c]) ? c : -1;
+    }
+    for (int pass = 0; pass < 2; pass++)
+        for (int e = 0; e < 4; e++) {
+            const int p = edges[e][0], q = edges[e][1];
+            if (group[p] < 0 || group[q] < 0 || grid_cut(grid, node[p], legs[e]) != NULL)
+                continue;
+            const int least = group[p] < group[q] ? group[p] : group[q];
+            group[p] = group[q] = least;
+        }
+    for (int c = 0; c < 4; c++)
+        count += group[c] == c;
+    return count;
+}
+
+/* Which corners of a cell speak for a point: all free ones, or, where a thin part runs
+ * through the cell, those that see the point. */
+static enum status choose_corners(struct field *field, struct vec2 at, int i, int j,
+                                  bool use[4])
+{
+    const struct grid *grid = field->grid;
+    int group[4];
+    const int groups = corner_groups(grid, i, j, group);
+    bool any = false;
+    for (int c = 0; c < 4; c++)
+        use[c] = group[c] >= 0;
+    if (groups < 2)
+        return STATUS_OK;
+    bool sees[4] = {false, false, false, false};
+    for (int c = 0; c < 4; c++) {
+        const struct vec2 corner = {grid->a[i + (c & 1)], grid->b[j + (c >> 1)]};
+        enum status status =
+            use[c] ? corner_sees(field, corner, at, &sees[c]) : STATUS_OK;
+        if (status != STATUS_OK)
+            return status;
+        any = any || sees[c];
+    }
+    for (int c = 0; c < 4 && any; c++)
+        use[c] = sees[c];
+    return STATUS_OK;
+}
+
+/* Adds corner (ci, cj) of cell (i, j). */
 static enum status blend_corner(struct field *field, struct vec2 at, int i, int j,
                                 int ci, int cj, struct blend *blend)
 {
     const struct grid *grid = field->grid;
     const int node = (j + cj) * grid->na + i + ci;
-    if (!passable(grid, node))
-        return STATUS_OK;
     const struct harmonic *fit;
     enum status status = fit_of_node(field, node, &fit);
     if (status != STATUS_OK)
@@ -269,9 +358,11 @@ static enum status blend_cell(struct field *field, struct vec2 at, int i, int j,
                               struct field_value *value)
 {
     struct blend blend = {0};
-    enum status status = STATUS_OK;
+    bool use[4];
+    enum status status = choose_corners(field, at, i, j, use);
     for (int c = 0; c < 4 && status == STATUS_OK; c++)
-        status = blend_corner(field, at, i, j, c & 1, c >> 1, &blend);
+        if (use[c])
+            status = blend_corner(field, at, i, j, c & 1, c >> 1, &blend);
     if (status != STATUS_OK)
         return status;
     if (blend.weight < WEIGHT_FLOOR) {
@@ -416,6 +507,7 @@ void field_destroy(struct field **field)
     mem_free(f->fit_of);
     mem_free(f->fits);
     mem_free(f->work);
+    mem_free(f->spans);
     mem_free(f);
     *field = NULL;
 }

@@ -11,7 +11,7 @@
 #include "solver/cross_section.h"
 #include "solver/figure_maker.h"
 
-enum { CIRCLE_POINTS = 48, RADIUS_STEPS = 40, NOTE_SIZE = 200, TERMS_SHOWN = 6 };
+enum { CIRCLE_POINTS = 48, RADIUS_STEPS = 40, NOTE_SIZE = 240, TERMS_SHOWN = 6 };
 
 #define BOUND_DEFAULT 1e-3
 
@@ -40,6 +40,18 @@ static double map_rms(const struct section *map)
     return sqrt(sum / (double)(map->nx * map->ny));
 }
 
+/* Said where an along plane stands in for an across plane. */
+static const char *substitute(const struct section_source *source)
+{
+    const bool electric = plane_kind_is_along(source->electric->plane->kind);
+    const bool magnetic = plane_kind_is_along(source->magnetic->plane->kind);
+    if (electric && magnetic)
+        return "; along planes stand in: nothing known of y in E and of x in B";
+    if (electric)
+        return "; electric_along stands in: nothing known of y in E";
+    return magnetic ? "; magnetic_along stands in: nothing known of x in B" : "";
+}
+
 static void add_map(struct maker *maker, const struct view *view,
                     const struct section_source *source)
 {
@@ -57,8 +69,9 @@ static void add_map(struct maker *maker, const struct view *view,
         peak = map_peak(&map, &x, &y);
         rms = map_rms(&map);
         (void)snprintf(note, sizeof note, "|x| <= %.4g mm, |y| <= %.4g mm; at x = %.4g, "
-                       "y = %.4g mm", view->geometry->beam.half_x * 1e3,
-                       view->geometry->beam.half_y * 1e3, x * 1e3, y * 1e3);
+                       "y = %.4g mm%s", view->geometry->beam.half_x * 1e3,
+                       view->geometry->beam.half_y * 1e3, x * 1e3, y * 1e3,
+                       substitute(source));
     }
     maker_add_or_miss(maker,
                       (struct figure_key){"ratio_error_peak_across",

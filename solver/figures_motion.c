@@ -125,7 +125,8 @@ static void add_separation(struct maker *maker, const struct beam *beam, double 
     else if (lack_slit == NULL && beam->slit_at < to)
         lack_slit = "the slit stands before the end of the path";
     if (lack_slit == NULL)
-        (void)snprintf(note, sizeof note, "slit %.6g mm wide at z = %.6g mm",
+        (void)snprintf(note, sizeof note, "slit %.6g mm wide at z = %.6g mm; size and divergence of the beam "
+                       "come on top",
                        beam->slit_width * 1e3, beam->slit_at * 1e3);
     const double width = lack_slit == NULL ? beam->slit_width : 1.0;
     maker_add_or_miss(maker,

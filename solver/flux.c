@@ -27,18 +27,22 @@ static int *labels_of(const struct grid *grid)
 struct totals {
     double *part;
     double *side;
+    double gross; /* sum of the absolute fluxes of all links credited */
 };
 
-static void credit(const struct totals *totals, int label, double flux)
+static void credit(struct totals *totals, int label, double flux)
 {
+    if (label == OWNER_FREE)
+        return;
+    totals->gross += fabs(flux);
     if (label >= 0)
         totals->part[label] += flux;
-    else if (label != OWNER_FREE)
+    else
         totals->side[OWNER_SIDE - label] += flux;
 }
 
 static void add_link(const struct grid *grid, const double *phi, const int *label,
-                     int node, enum leg leg, const struct totals *totals)
+                     int node, enum leg leg, struct totals *totals)
 {
     const int next = leg == LEG_EAST ? node + 1 : node + grid->na;
     if (label[node] == label[next])
@@ -51,7 +55,7 @@ static void add_link(const struct grid *grid, const double *phi, const int *labe
 enum status flux_measure(const struct grid *grid, const double *phi, double *part,
                          double side[SIDE_COUNT], double *imbalance)
 {
-    const struct totals totals = {part, side};
+    struct totals totals = {part, side, 0.0};
     const size_t parts = grid->plane->part_count;
     int *label = labels_of(grid);
     if (label == NULL)
@@ -66,16 +70,12 @@ enum status flux_measure(const struct grid *grid, const double *phi, double *par
         if (n / grid->na + 1 < grid->nb)
             add_link(grid, phi, label, n, LEG_NORTH, &totals);
     }
-    double sum = 0.0, size = 0.0;
-    for (size_t p = 0; p < parts; p++) {
+    double sum = 0.0;
+    for (size_t p = 0; p < parts; p++)
         sum += part[p];
-        size += fabs(part[p]);
-    }
-    for (int s = 0; s < SIDE_COUNT; s++) {
+    for (int s = 0; s < SIDE_COUNT; s++)
         sum += side[s];
-        size += fabs(side[s]);
-    }
-    *imbalance = size > 0.0 ? fabs(sum) / size : 0.0;
+    *imbalance = totals.gross > 0.0 ? fabs(sum) / totals.gross : 0.0;
     mem_free(label);
     return STATUS_OK;
 }

@@ -12,8 +12,9 @@
 #include "solver/stencil.h"
 
 /** part[part_count] and side[SIDE_COUNT]: outward flux of -grad phi (unit of phi) out of
- *  each; imbalance: |sum| / sum of absolute values, 0 without any flux. Symmetry sides
- *  of kind mirror have none. STATUS_MEMORY.
+ *  each; imbalance: |sum| / sum of the absolute fluxes of all links counted (net fluxes
+ *  may all vanish by symmetry), 0 without any flux. Symmetry sides of kind mirror have
+ *  none. STATUS_MEMORY.
  *  Order  2 on graded grids (the contour's distance from the surface does not matter:
  *         the difference equation of uncut nodes conserves flux exactly). */
 enum status flux_measure(const struct grid *grid, const double *phi, double *part,

@@ -24,7 +24,8 @@ struct quality {
                               norms */
     double rcond;          /* reciprocal condition estimate of the factorisation */
     double flux_imbalance; /* |sum of the fluxes of all parts and sides| / sum of
-                              their absolute values; 0 if there is no flux */
+                              the absolute fluxes of their links (flux.h); 0 if there
+                              is no flux */
     double seconds;        /* wall time of grid, factorisation and solves */
     double memory;         /* bytes, peak of the factorisation */
 };

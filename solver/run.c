@@ -1,7 +1,6 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later */
 #include "solver/run.h"
 
-#include <stdio.h>
 #include <string.h>
 
 #include "shared/mem.h"
@@ -10,13 +9,13 @@
 #include "solver/figure_maker.h"
 #include "solver/lattice_field.h"
 #include "solver/path.h"
-#include "solver/plane_solution.h"
+#include "solver/plane_families.h"
 #include "solver/probe_reading.h"
 #include "solver/profile.h"
 #include "solver/verdict.h"
 #include "solver/view.h"
 
-enum { LEVELS_DEFAULT = 3, STAGE_SIZE = 80 };
+enum { LEVELS_DEFAULT = 3 };
 
 static const struct place NOWHERE = {0, 0};
 
@@ -39,35 +38,27 @@ static void tell(const struct run *run, const char *stage, double fraction)
         run->options->progress(run->options->context, stage, fraction);
 }
 
-static enum status solve_plane(struct run *run, enum plane_kind kind, double from,
-                               double share)
+/* Solving is this share of the whole as far as progress is concerned. */
+#define SOLVE_SHARE 0.8
+
+static void tell_solve(void *context, const char *stage, double fraction)
 {
-    enum status status = STATUS_OK;
-    for (int l = 0; l < run->levels && status == STATUS_OK; l++) {
-        char stage[STAGE_SIZE];
-        (void)snprintf(stage, sizeof stage, "%s, grid %d of %d", plane_kind_key(kind),
-                       l + 1, run->levels);
-        /* Work grows about fourfold from level to level. */
-        tell(run, stage, from + share * (l == 0 ? 0.0 : l == 1 ? 0.05 : 0.2));
-        status = plane_solve(run->geometry, kind, run->fineness, l,
-                             &run->solutions[l][kind], run->messages);
-        run->views[l].planes[kind] = &run->solutions[l][kind];
-    }
-    return status;
+    tell(context, stage, SOLVE_SHARE * fraction);
 }
 
 static enum status solve_planes(struct run *run)
 {
-    int count = 0, done = 0;
-    enum status status = STATUS_OK;
-    for (int k = 0; k < PLANE_KINDS; k++)
-        count += run->geometry->planes[k].present;
-    for (int k = 0; k < PLANE_KINDS && status == STATUS_OK; k++) {
-        if (!run->geometry->planes[k].present)
-            continue;
-        const double share = 0.8 / count;
-        status = solve_plane(run, (enum plane_kind)k, share * done++, share);
-    }
+    const struct family_order order = {.geometry = run->geometry,
+                                       .fineness = run->fineness,
+                                       .levels = run->levels,
+                                       .threads = run->options->threads,
+                                       .progress = tell_solve,
+                                       .context = run};
+    enum status status = plane_families_solve(&order, run->solutions, run->messages);
+    for (int l = 0; l < run->levels; l++)
+        for (int k = 0; k < PLANE_KINDS; k++)
+            if (run->geometry->planes[k].present)
+                run->views[l].planes[k] = &run->solutions[l][k];
     return status;
 }
 
@@ -156,7 +147,7 @@ static enum status keep_planes(struct run *run, struct result *result)
 static enum status measure(struct run *run, struct result *result)
 {
     enum status status = STATUS_OK;
-    tell(run, "figures", 0.8);
+    tell(run, "figures", SOLVE_SHARE);
     for (int l = 0; l < run->levels && status == STATUS_OK; l++)
         status = figures_of_level(run, l);
     if (status == STATUS_OK)

@@ -26,10 +26,10 @@ static const char *figure_name(enum limit_kind kind)
 }
 
 /* Severity of a figure for a limit: the larger the worse; missing and unsettled figures
- * are worst. */
+ * and what is no number are worst. */
 static double badness(const struct figure *figure, bool at_least)
 {
-    if (figure->state != FIGURE_GOOD)
+    if (figure->state != FIGURE_GOOD || !isfinite(figure->value))
         return INFINITY;
     const double size = fabs(figure->value);
     return at_least ? -(size - figure->uncertainty) : size + figure->uncertainty;

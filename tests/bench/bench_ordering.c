@@ -32,6 +32,7 @@ enum {
 
 static int wanted_ordering = ORDERING_AMD;
 
+/* NOLINTBEGIN(bugprone-reserved-identifier): the names are the linker's. */
 int __real_umfpack_di_symbolic(int rows, int columns, const int *start,
                                const int *column, const double *value, void **symbolic,
                                const double *control, double *info);
@@ -55,6 +56,8 @@ int __wrap_umfpack_di_symbolic(int rows, int columns, const int *start,
     }
     return code;
 }
+
+/* NOLINTEND(bugprone-reserved-identifier) */
 
 /* What one ordering costs. */
 struct cost {

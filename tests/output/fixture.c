@@ -3,7 +3,7 @@
 /* A pair of plates and a pair of poles whose fields fall off as two different smooth
  * steps, so that every plot has something to show and every column its own numbers. */
 
-#define _DEFAULT_SOURCE /* mkdtemp, open_memstream */
+#define _DEFAULT_SOURCE /* NOLINT: mkdtemp, open_memstream */
 
 #include "tests/output/fixture.h"
 
@@ -18,6 +18,7 @@
 
 #define NA        41
 #define NB        31
+#define NODES     ((size_t)NA * NB)
 #define E_CENTRE  5507.3
 #define B_CENTRE  0.10237
 #define VACUUM_MU 1.25663706212e-6
@@ -166,10 +167,10 @@ static void make_plane_result(struct plane_result *result, const struct plane *p
     grid->nb = NB;
     grid->a = make_lines(plane->low.a, plane->high.a, NA);
     grid->b = make_lines(plane->low.b, plane->high.b, NB);
-    grid->owner = MEM_NEW(NA * NB, int);
-    result->potential = MEM_NEW(NA * NB, double);
-    result->field_a = MEM_NEW(NA * NB, double);
-    result->field_b = MEM_NEW(NA * NB, double);
+    grid->owner = MEM_NEW(NODES, int);
+    result->potential = MEM_NEW(NODES, double);
+    result->field_a = MEM_NEW(NODES, double);
+    result->field_b = MEM_NEW(NODES, double);
     assert_true(grid->owner && result->potential && result->field_a && result->field_b);
     for (int j = 0; j < NB; j++)
         for (int i = 0; i < NA; i++)
@@ -225,7 +226,7 @@ static void make_section(struct section *section)
     section->nx = section->ny = N;
     section->x = new_column(N);
     section->y = new_column(N);
-    section->ratio_error = new_column(N * N);
+    section->ratio_error = new_column((size_t)N * N);
     for (int k = 0; k < N; k++) {
         section->x[k] = 3.1e-3 * (k - 12) / 12;
         section->y[k] = 2.7e-3 * (k - 12) / 12;
@@ -240,7 +241,7 @@ static void make_section(struct section *section)
 
 static void make_lattice(struct lattice_field *lattice)
 {
-    size_t count = 3 * 2 * 4;
+    const size_t count = 24; /* 3 by 2 by 4 */
     *lattice = (struct lattice_field){
         .present = true,
         .n = {3, 2, 4},

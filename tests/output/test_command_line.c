@@ -76,8 +76,9 @@ static void test_mistakes_name_the_nearest_word(void **state)
         {"run f.yaml --fineness 0", "number from 0.1 to 20, not '0'"},
         {"run f.yaml --fineness nan", "not 'nan'"},
         {"run f.yaml --fineness 2x", "not '2x'"},
-        {"run f.yaml --grids 4", "from 1 to 3, not '4'"},
-        {"run f.yaml --grids 1.5", "not '1.5'"},
+        {"run f.yaml --grids 4", "from 2 to 3, not '4'"},
+        {"run f.yaml --grids 2.5", "not '2.5'"},
+        {"run f.yaml --grids 1", "from 2 to 3, not '1'"},
         {"", "nothing to do"},
     };
     for (size_t k = 0; k < sizeof rows / sizeof rows[0]; k++) {

@@ -2,7 +2,7 @@
 
 /* Whatever happens, the user's previous folder is either untouched or replaced whole. */
 
-#define _XOPEN_SOURCE 700 /* symlink, setrlimit */
+#define _XOPEN_SOURCE 700 /* NOLINT: symlink, setrlimit */
 
 #include <signal.h>
 #include <stdlib.h>

@@ -90,7 +90,7 @@ static void test_nan_is_refused_by_both(void **state)
     struct lattice_field *lattice = &fixture->result.lattice;
     struct capture capture;
     double kept = lattice->b[2][13];
-    lattice->b[2][13] = NAN;
+    lattice->b[2][13] = (double)NAN;
     capture_open(&capture);
     assert_int_equal(lattice_map_write_vtk(&capture.sink, lattice, &fixture->messages),
                      STATUS_UNTRUSTED);

@@ -44,7 +44,7 @@ static void test_exact_number_has_no_bracket(void **state)
         const char *text;
     } rows[] = {{0.0, "0"},           {-0.0, "0"},        {110, "110"},
                 {2.385, "2.385"},     {1e-3, "0.001"},    {9.5e-4, "9.5e-4"},
-                {999999.9999, "1e6"}, {-4.5e8, "-4.5e8"}, {NAN, "not finite"}};
+                {999999.9999, "1e6"}, {-4.5e8, "-4.5e8"}, {(double)NAN, "not finite"}};
     for (size_t k = 0; k < sizeof rows / sizeof rows[0]; k++) {
         char text[NUMBER_TEXT];
         number_format(rows[k].value, 0, text, sizeof text);
@@ -73,6 +73,8 @@ static void test_quantity_uses_the_unit_of_the_trade(void **state)
         {8.1e-4, 2e-5, "1", "8.1(2)e-4"},
         {7.5, 0.5, "kg m", "7.5(5) kg m"},
         {0, 2e-5, "T", "0(20) uT"},
+        {0, 0, "V", "0 V"},
+        {0, 0, "m", "0 mm"},
     };
     for (size_t k = 0; k < sizeof rows / sizeof rows[0]; k++) {
         char text[NUMBER_TEXT];

@@ -89,7 +89,7 @@ static void test_nan_is_refused_and_nothing_written(void **state)
     for (int k = 0; k < 3; k++) {
         struct capture capture;
         double kept = arrays[k][77];
-        arrays[k][77] = k == 1 ? INFINITY : NAN;
+        arrays[k][77] = k == 1 ? (double)INFINITY : (double)NAN;
         capture_open(&capture);
         assert_int_equal(plane_vtk_write(&capture.sink, PLANE_MAGNETIC_ALONG, plane,
                                          &fixture->messages),

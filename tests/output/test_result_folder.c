@@ -2,7 +2,7 @@
 
 /* The whole folder from the hand-made result: which files, no litter, same bytes. */
 
-#define _XOPEN_SOURCE 700 /* setenv */
+#define _XOPEN_SOURCE 700 /* NOLINT: setenv */
 
 #include <stdlib.h>
 #include <string.h>
@@ -148,7 +148,7 @@ static void test_without_gnuplot_only_plots_are_missing(void **state)
 static void test_value_that_is_not_finite_writes_nothing(void **state)
 {
     struct fixture *fixture = *state;
-    fixture->result.planes[PLANE_MAGNETIC_ALONG].potential[3] = NAN;
+    fixture->result.planes[PLANE_MAGNETIC_ALONG].potential[3] = (double)NAN;
     assert_int_equal(result_folder_write(&fixture->result, fixture_path(fixture, "out"),
                                          &fixture->messages),
                      STATUS_UNTRUSTED);

@@ -1,0 +1,192 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later */
+
+/* Made-up families of values whose limit is known: the estimate must come close and its
+ * uncertainty must cover the rest. */
+
+#include "tests/support/assert_close.h"
+
+#include "solver/extrapolate.h"
+
+#define LIMIT 2.385
+
+/* LIMIT + c2 h^2 + c3 h^3 on h = 1, 1/2, 1/4. */
+static void series(double c2, double c3, double values[3])
+{
+    for (int k = 0; k < 3; k++) {
+        const double h = ldexp(1.0, -k);
+        values[k] = LIMIT + c2 * h * h + c3 * h * h * h;
+    }
+}
+
+static void power(double c, double order, double values[3])
+{
+    for (int k = 0; k < 3; k++)
+        values[k] = LIMIT + c * exp2(-order * k);
+}
+
+static void assert_covers(const struct estimate *e, double limit)
+{
+    assert_true(e->settled);
+    assert_at_most(fabs(e->value - limit), e->uncertainty);
+}
+
+static void test_second_and_third_order_terms_are_removed(void **state)
+{
+    (void)state;
+    double v[3];
+    series(0.31, 0.17, v);
+    const struct estimate e = extrapolate(v, 3, 0.0);
+    assert_close(e.value, LIMIT, 1e-14, 0.0);
+    assert_covers(&e, LIMIT);
+    assert_true(e.uncertainty > 0.0 && e.uncertainty < fabs(v[2] - LIMIT));
+    assert_true(e.order > 1.5 && e.order < 3.0);
+}
+
+static void test_pure_second_order_is_measured(void **state)
+{
+    (void)state;
+    double v[3];
+    series(-0.31, 0.0, v);
+    const struct estimate e = extrapolate(v, 3, 0.0);
+    assert_close(e.order, 2.0, 1e-12, 0.0);
+    assert_close(e.value, LIMIT, 1e-14, 0.0);
+    /* Never less than a share of what was corrected. */
+    assert_true(e.uncertainty >= 0.02 * fabs(v[2] - e.value));
+}
+
+static void test_fourth_order_remainder_is_covered(void **state)
+{
+    (void)state;
+    double v[3];
+    for (int k = 0; k < 3; k++) {
+        const double h = ldexp(1.0, -k);
+        v[k] = LIMIT + 0.31 * h * h + 0.1 * h * h * h - 0.02 * h * h * h * h;
+    }
+    const struct estimate e = extrapolate(v, 3, 0.0);
+    assert_covers(&e, LIMIT);
+    assert_at_most(fabs(e.value - LIMIT), 0.05 * fabs(v[2] - LIMIT));
+}
+
+static void test_lower_orders_are_measured_and_used(void **state)
+{
+    (void)state;
+    const double orders[] = {0.6, 0.667, 1.0, 1.333, 1.49};
+    for (size_t k = 0; k < sizeof orders / sizeof *orders; k++) {
+        double v[3];
+        power(-0.43, orders[k], v);
+        const struct estimate e = extrapolate(v, 3, 0.0);
+        assert_close(e.order, orders[k], 1e-10, 0.0);
+        assert_close(e.value, LIMIT, 1e-12, 0.0);
+        assert_covers(&e, LIMIT);
+        assert_true(e.uncertainty > 0.2 * fabs(v[2] - LIMIT));
+    }
+}
+
+static void test_fast_change_leaves_the_finest_value(void **state)
+{
+    (void)state;
+    const double v[3] = {4.0, 2.4, 2.385 + 0.003};
+    const struct estimate e = extrapolate(v, 3, 0.0);
+    assert_true(e.value == v[2]);
+    assert_covers(&e, LIMIT);
+    assert_close(e.uncertainty, fabs(v[2] - v[1]), 1e-9, 0.0);
+}
+
+static void test_growing_changes_are_unsettled(void **state)
+{
+    (void)state;
+    const double v[3] = {2.0, 2.2, 2.5};
+    const struct estimate e = extrapolate(v, 3, 0.0);
+    assert_false(e.settled);
+    assert_true(e.uncertainty >= 0.3);
+}
+
+static void test_oscillating_changes_are_unsettled_unless_they_fall(void **state)
+{
+    (void)state;
+    const double swings[3] = {2.0, 2.6, 2.1};
+    assert_false(extrapolate(swings, 3, 0.0).settled);
+    const double falls[3] = {2.0, 2.6, 2.385};
+    const struct estimate e = extrapolate(falls, 3, 0.0);
+    assert_true(e.settled);
+    assert_true(e.uncertainty >= 0.6);
+}
+
+/* Changes far below the scale cannot be judged as orders, nor need they be. */
+static void test_small_disorder_is_settled_with_a_wide_uncertainty(void **state)
+{
+    (void)state;
+    const double v[3] = {1e-6, 3e-6, -1e-6};
+    const struct estimate judged = extrapolate(v, 3, 1.0);
+    assert_true(judged.settled);
+    assert_close(judged.uncertainty, 1.2e-5, 1e-6, 0.0);
+    assert_false(extrapolate(v, 3, 0.0).settled); /* against themselves they are large */
+}
+
+static void test_constant_values_stand(void **state)
+{
+    (void)state;
+    const double v[3] = {LIMIT, LIMIT, LIMIT};
+    for (int levels = 2; levels <= 3; levels++) {
+        const struct estimate e = extrapolate(v, levels, 0.0);
+        assert_true(e.settled && e.value == LIMIT);
+        assert_true(e.uncertainty > 0.0 && e.uncertainty < 1e-11 * LIMIT);
+    }
+    const double zeros[3] = {0.0, 0.0, 0.0};
+    const struct estimate e = extrapolate(zeros, 3, 0.0);
+    assert_true(e.settled && e.value == 0.0 && e.uncertainty == 0.0);
+}
+
+static void test_round_off_is_not_taken_for_convergence(void **state)
+{
+    (void)state;
+    const double v[3] = {LIMIT, LIMIT * (1.0 + 4e-15), LIMIT * (1.0 + 5e-15)};
+    const struct estimate e = extrapolate(v, 3, 0.0);
+    assert_true(e.settled && e.order == 0.0);
+    assert_close(e.value, LIMIT, 1e-14, 0.0);
+}
+
+static void test_two_grids_assume_second_order_with_a_wide_uncertainty(void **state)
+{
+    (void)state;
+    double v[3];
+    series(0.31, 0.05, v);
+    const struct estimate e = extrapolate(v, 2, 0.0);
+    assert_close(e.value, v[1] + (v[1] - v[0]) / 3.0, 1e-15, 0.0);
+    assert_covers(&e, LIMIT);
+    assert_true(e.order == 0.0);
+    assert_close(e.uncertainty, fabs(v[1] - v[0]), 1e-9, 0.0);
+}
+
+/* A value that is no number must never come out as settled. */
+static void test_not_a_number_is_never_settled(void **state)
+{
+    (void)state;
+    for (int at = 0; at < 3; at++) {
+        double v[3] = {LIMIT, LIMIT * (1.0 + 1e-7), LIMIT * (1.0 + 2e-7)};
+        v[at] = NAN;
+        assert_false(extrapolate(v, 3, 0.0).settled);
+        assert_false(extrapolate(v, 3, 1.0).settled);
+        if (at < 2)
+            assert_false(extrapolate(v, 2, 1.0).settled);
+    }
+}
+
+int main(void)
+{
+    const struct CMUnitTest tests[] = {
+        cmocka_unit_test(test_second_and_third_order_terms_are_removed),
+        cmocka_unit_test(test_pure_second_order_is_measured),
+        cmocka_unit_test(test_fourth_order_remainder_is_covered),
+        cmocka_unit_test(test_lower_orders_are_measured_and_used),
+        cmocka_unit_test(test_fast_change_leaves_the_finest_value),
+        cmocka_unit_test(test_growing_changes_are_unsettled),
+        cmocka_unit_test(test_oscillating_changes_are_unsettled_unless_they_fall),
+        cmocka_unit_test(test_small_disorder_is_settled_with_a_wide_uncertainty),
+        cmocka_unit_test(test_constant_values_stand),
+        cmocka_unit_test(test_round_off_is_not_taken_for_convergence),
+        cmocka_unit_test(test_two_grids_assume_second_order_with_a_wide_uncertainty),
+        cmocka_unit_test(test_not_a_number_is_never_settled),
+    };
+    return cmocka_run_group_tests(tests, NULL, NULL);
+}
