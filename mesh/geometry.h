@@ -46,7 +46,7 @@ enum part_kind { PART_ELECTRODE, PART_GUARD, PART_CLAMP, PART_POLE };
 struct part {
     char *name; /* unique within its plane */
     enum part_kind kind;
-    struct shape shape;      /* m, in the plane's (a, b) */
+    struct shape shape; /* m, in the plane's (a, b) */
     struct linear potential;
     double edge_radius; /* m: radius on which the surface field at a sharp corner is
                            stated; 0 if the file does not give one */
@@ -113,10 +113,10 @@ enum limit_kind {
     LIMIT_EVEN_RADIUS,     /* at least, m: circle of the cross-section within it */
     LIMIT_DETUNING,        /* at most: |balanced speed / wanted speed - 1| */
     LIMIT_LENGTH_MISMATCH, /* at most, m: |effective length of E - that of B| */
-    LIMIT_KICK,            /* at most, rad: direction of the wanted particle at the exit */
-    LIMIT_OFFSET,          /* at most, m: its sideways place at the exit */
-    LIMIT_RESOLUTION,      /* at least: mass resolution m/dm at the slit */
-    LIMIT_SURFACE_FIELD,   /* at most, V/m, on any electrode */
+    LIMIT_KICK,       /* at most, rad: direction of the wanted particle at the exit */
+    LIMIT_OFFSET,     /* at most, m: its sideways place at the exit */
+    LIMIT_RESOLUTION, /* at least: mass resolution m/dm at the slit */
+    LIMIT_SURFACE_FIELD, /* at most, V/m, on any electrode */
     LIMIT_KINDS
 };
 

@@ -22,7 +22,7 @@ enum { OWNER_FREE = -1, OWNER_SIDE = -2 /* OWNER_SIDE - s is side s */ };
 
 /* A leg of a free node that ends on a part before it reaches the next node. */
 struct cut {
-    int node;      /* index j*na + i of the free node */
+    int node; /* index j*na + i of the free node */
     enum leg leg;
     int part;      /* the part it ends on */
     double length; /* m, positive, shorter than the full leg */
@@ -33,13 +33,13 @@ struct cut {
 struct grid {
     const struct plane *plane; /* borrowed */
     int na, nb;
-    double *a;         /* [na] line coordinates (m), increasing */
-    double *b;         /* [nb] */
-    int *owner;        /* [nb*na] part index, OWNER_FREE, or OWNER_SIDE - side */
-    struct cut *cuts;  /* [cut_count], sorted by node, then leg */
+    double *a;        /* [na] line coordinates (m), increasing */
+    double *b;        /* [nb] */
+    int *owner;       /* [nb*na] part index, OWNER_FREE, or OWNER_SIDE - side */
+    struct cut *cuts; /* [cut_count], sorted by node, then leg */
     size_t cut_count;
-    int *first_cut;    /* [nb+1] index of the first cut of row j, for quick look-up */
-    int free_count;    /* nodes with OWNER_FREE */
+    int *first_cut; /* [nb+1] index of the first cut of row j, for quick look-up */
+    int free_count; /* nodes with OWNER_FREE */
 };
 
 /** Builds the grid of a plane. fineness scales the number of lines per axis; level

@@ -59,14 +59,13 @@ static int leg_end(const struct grid *grid, int node, enum leg leg, int neighbou
     return cut != NULL ? cut->part : grid->owner[neighbour];
 }
 
-static bool leg_is_blocked(const struct grid *grid, int node, int i, int j, enum leg leg,
-                           struct messages *messages)
+static bool leg_is_blocked(const struct grid *grid, int node, int i, int j,
+                           enum leg leg, struct messages *messages)
 {
     const bool east = leg == LEG_EAST;
     const int neighbour = east ? node + 1 : node + grid->na;
     const int here = leg_end(grid, node, leg, neighbour);
-    const int there =
-        leg_end(grid, neighbour, east ? LEG_WEST : LEG_SOUTH, node);
+    const int there = leg_end(grid, neighbour, east ? LEG_WEST : LEG_SOUTH, node);
     if (here == OWNER_FREE || there == OWNER_FREE || may_touch(grid, here, there))
         return false;
     report_gap(grid, here, there, i, j, messages);
@@ -143,12 +142,13 @@ static enum status judge_spaces(const struct grid *grid, struct messages *messag
         if (grid->owner[n] != OWNER_FREE || seen[n] ||
             space_is_fixed(grid, n, seen, stack))
             continue;
-        messages_add(messages, SEVERITY_ERROR, grid->plane->place,
-                     "the free space round (%.6g, %.6g) mm in %s touches no fixed "
-                     "potential, so its potential is undetermined; expected a part or a "
-                     "wall on its border",
-                     grid->a[n % grid->na] * 1e3, grid->b[n / grid->na] * 1e3,
-                     plane_kind_key(grid->plane->kind));
+        messages_add(
+            messages, SEVERITY_ERROR, grid->plane->place,
+            "the free space round (%.6g, %.6g) mm in %s touches no fixed "
+            "potential, so its potential is undetermined; expected a part or a "
+            "wall on its border",
+            grid->a[n % grid->na] * 1e3, grid->b[n / grid->na] * 1e3,
+            plane_kind_key(grid->plane->kind));
         status = STATUS_INPUT;
     }
     if (status == STATUS_OK && grid->free_count == 0) {

@@ -128,7 +128,7 @@ static enum status narrow_gap(const struct part *part, int axis, double toleranc
 static enum status gap_along(const struct plane *plane, int axis, double tolerance,
                              double *gap)
 {
-    double below = -INFINITY, above = INFINITY;
+    double below = -(double)INFINITY, above = (double)INFINITY;
     enum status status = STATUS_OK;
     for (size_t p = 0; p < plane->part_count && status == STATUS_OK; p++)
         status = narrow_gap(&plane->parts[p], axis, tolerance, &below, &above);
@@ -163,11 +163,13 @@ enum status grid_place_lines(struct grid *grid, double fineness, int level)
     if (status == STATUS_OK)
         status = keys_of_plane(plane, gap, lists);
     if (status == STATUS_OK)
-        status = lines_build(plane->low.a, plane->high.a, lists[0].items,
-                             lists[0].count, spacing, merge, level, &grid->a, &grid->na);
+        status =
+            lines_build(plane->low.a, plane->high.a, lists[0].items, lists[0].count,
+                        spacing, merge, level, &grid->a, &grid->na);
     if (status == STATUS_OK)
-        status = lines_build(plane->low.b, plane->high.b, lists[1].items,
-                             lists[1].count, spacing, merge, level, &grid->b, &grid->nb);
+        status =
+            lines_build(plane->low.b, plane->high.b, lists[1].items, lists[1].count,
+                        spacing, merge, level, &grid->b, &grid->nb);
     mem_free(lists[0].items);
     mem_free(lists[1].items);
     return status;

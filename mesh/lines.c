@@ -86,9 +86,9 @@ static void table_fill(struct table *table, const struct grading *grading,
     for (int k = 1; k <= TABLE_CELLS; k++) {
         table->slope[k] = table_slope(grading, s, k * step);
         double middle = table_slope(grading, s, (k - 0.5) * step);
-        table->sum[k] = table->sum[k - 1] + step / 6.0 *
-                                                (table->slope[k - 1] + 4.0 * middle +
-                                                 table->slope[k]);
+        table->sum[k] =
+            table->sum[k - 1] +
+            step / 6.0 * (table->slope[k - 1] + 4.0 * middle + table->slope[k]);
     }
 }
 
@@ -200,7 +200,8 @@ enum status lines_build(double low, double high, const struct key_line *keys,
     *lines = NULL;
     *count = 0;
     if (!(isfinite(low) && isfinite(high) && low < high && spacing.coarsest > 0.0 &&
-          spacing.at_reference > 0.0 && spacing.reference > 0.0 && level >= 0 && level < 16))
+          spacing.at_reference > 0.0 && spacing.reference > 0.0 && level >= 0 &&
+          level < 16))
         return STATUS_SIZE;
 
     double *ends = MEM_NEW(key_count + 2, double);
@@ -211,7 +212,8 @@ enum status lines_build(double low, double high, const struct key_line *keys,
     if (status == STATUS_OK)
         end_count = merged_ends(low, high, keys, key_count, merge, ends);
     for (size_t k = 0; k + 1 < end_count && status == STATUS_OK; k++)
-        status = add_stretch(&grading, ends[k], ends[k + 1], level, table, lines, count);
+        status =
+            add_stretch(&grading, ends[k], ends[k + 1], level, table, lines, count);
     if (status != STATUS_OK) {
         mem_free(*lines);
         *lines = NULL;

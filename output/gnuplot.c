@@ -18,6 +18,7 @@
 
 #define SCRIPT_NAME "plot.script"
 #define FAULTS_NAME "plot.faults"
+#define DATA_NAME   "plot.data"
 #define TAIL        "</svg>"
 
 extern char **environ;
@@ -58,26 +59,59 @@ void plot_drop(struct plot *plot)
     sink_drop(&plot->script);
     if (plot->script_path)
         (void)unlink(plot->script_path);
+    if (plot->data_path)
+        (void)unlink(plot->data_path);
     mem_free(plot->script_path);
+    mem_free(plot->data_path);
     *plot = (struct plot){0};
 }
 
+enum status plot_data(struct plot *plot, const struct folder *folder,
+                      const double *values, size_t count, struct messages *messages)
+{
+    struct sink data = {0};
+    plot->data_path = folder_path(folder, DATA_NAME);
+    if (!plot->data_path)
+        return STATUS_MEMORY;
+    enum status status = sink_open(&data, plot->data_path, messages);
+    if (status)
+        return status;
+    for (size_t k = 0; k < count; k++) {
+        const float value = (float)values[k];
+        sink_bytes(&data, &value, sizeof value);
+    }
+    return sink_close(&data, messages);
+}
+
+/* Descriptors of the child: nothing in, the picture out, complaints, the data. */
+static int redirect(posix_spawn_file_actions_t *actions, const struct plot *plot,
+                    const char *picture, const char *faults)
+{
+    const int flags = O_WRONLY | O_CREAT | O_TRUNC;
+    int error = posix_spawn_file_actions_addopen(actions, 0, "/dev/null", O_RDONLY, 0);
+    if (!error)
+        error = posix_spawn_file_actions_addopen(actions, 1, picture, flags, 0666);
+    if (!error)
+        error = posix_spawn_file_actions_addopen(actions, 2, faults, flags, 0666);
+    if (!error && plot->data_path)
+        error =
+            posix_spawn_file_actions_addopen(actions, 3, plot->data_path, O_RDONLY, 0);
+    return error;
+}
+
 /* Starts gnuplot; 0 or an errno. */
-static int start(char *script, const char *picture, const char *faults, pid_t *child)
+static int start(const struct plot *plot, const char *picture, const char *faults,
+                 pid_t *child)
 {
     /* -d: the picture must not depend on anyone's gnuplot settings */
     char program[] = "gnuplot", defaults[] = "-d";
-    char *const arguments[] = {program, defaults, script, NULL};
+    char *const arguments[] = {program, defaults, plot->script_path, NULL};
     posix_spawn_file_actions_t actions;
     int error = posix_spawn_file_actions_init(&actions);
     if (error)
         return error;
-    int flags = O_WRONLY | O_CREAT | O_TRUNC;
-    if (!(error = posix_spawn_file_actions_addopen(&actions, 0, "/dev/null", O_RDONLY,
-                                                   0)) &&
-        !(error =
-              posix_spawn_file_actions_addopen(&actions, 1, picture, flags, 0666)) &&
-        !(error = posix_spawn_file_actions_addopen(&actions, 2, faults, flags, 0666)))
+    error = redirect(&actions, plot, picture, faults);
+    if (!error)
         error = posix_spawnp(child, "gnuplot", &actions, NULL, arguments, environ);
     (void)posix_spawn_file_actions_destroy(&actions);
     return error;
@@ -134,11 +168,12 @@ static enum status check_whole(const char *picture, struct messages *messages)
     return STATUS_WRITE;
 }
 
-static enum status draw(char *script, const char *picture, const char *faults,
-                        const char *name, bool *drawn, struct messages *messages)
+static enum status draw(const struct plot *plot, const char *picture,
+                        const char *faults, bool *drawn, struct messages *messages)
 {
+    const char *name = plot->name;
     pid_t child;
-    int error = start(script, picture, faults, &child);
+    int error = start(plot, picture, faults, &child);
     int result = error ? 127 : wait_for(child);
     if (result == 127)
         warn_missing(name, strerror(error ? error : ENOENT), messages);
@@ -159,7 +194,7 @@ enum status plot_end(struct plot *plot, struct folder *folder, bool *drawn,
     if (!status && !(picture && faults))
         status = STATUS_MEMORY;
     if (!status)
-        status = draw(plot->script_path, picture, faults, name, drawn, messages);
+        status = draw(plot, picture, faults, drawn, messages);
     if (!status && *drawn)
         status = folder_note(folder, name);
     if (picture && (status || !*drawn))

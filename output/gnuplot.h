@@ -16,6 +16,7 @@
 struct plot {
     struct sink script; /* write the gnuplot commands here */
     char *script_path;
+    char *data_path;  /* of plot_data; NULL without */
     const char *name; /* borrowed: name of the picture, "path.svg" */
 };
 
@@ -23,6 +24,17 @@ struct plot {
  *  terminal of width by height pixels with a white background. */
 enum status plot_begin(struct plot *plot, const struct folder *folder, const char *name,
                        int width, int height, struct messages *messages) MUST_CHECK;
+
+/** Gives the script values[count] as single-precision binary data, which it reads as the
+ *  file PLOT_DATA: parsing numbers as text took most of gnuplot's time. At most once per
+ *  plot. */
+enum status plot_data(struct plot *plot, const struct folder *folder,
+                      const double *values, size_t count,
+                      struct messages *messages) MUST_CHECK;
+
+/* Name of that file for the script: a descriptor, so no path needs quoting; each use
+ * reads it from its start (Linux). */
+#define PLOT_DATA "/dev/fd/3"
 
 /** Runs gnuplot on the script, removes the script, and notes the picture in the folder.
  *  *drawn tells whether there is a picture: without gnuplot, or when it rejects the

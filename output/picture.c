@@ -131,13 +131,26 @@ static enum status cover_row(struct raster *raster, const struct shape *shape, i
     return status;
 }
 
+static bool has_cuts(const struct part *part)
+{
+    return part->shape.count > 1;
+}
+
+bool picture_needs_cover(const struct plane *plane)
+{
+    for (size_t k = 0; k < plane->part_count; k++)
+        if (has_cuts(&plane->parts[k]))
+            return true;
+    return false;
+}
+
 enum status raster_cover(struct raster *raster, const struct plane *plane)
 {
     struct span *spans = NULL;
     size_t capacity = 0;
     enum status status = STATUS_OK;
     for (size_t k = 0; k < plane->part_count; k++)
-        for (int j = 0; !status && j < raster->nb; j++)
+        for (int j = 0; !status && has_cuts(&plane->parts[k]) && j < raster->nb; j++)
             status = cover_row(raster, &plane->parts[k].shape, j, &spans, &capacity);
     mem_free(spans);
     return status;
@@ -160,6 +173,16 @@ void raster_using(struct sink *script, const struct raster *raster, const char *
     sink_print(script, "$%s matrix using (%.9g+%.9g*$1):(%.9g+%.9g*$2)", name,
                pixel_a(raster, 0) * 1e3, raster->pixel.a * 1e3,
                pixel_b(raster, 0) * 1e3, raster->pixel.b * 1e3);
+}
+
+void raster_source(struct sink *script, const struct raster *raster, int coordinates)
+{
+    sink_print(script,
+               "'" PLOT_DATA "' binary array=(%d,%d) format='%%float' "
+               "origin=(%.9g,%.9g%s) dx=%.9g dy=%.9g",
+               raster->na, raster->nb, pixel_a(raster, 0) * 1e3,
+               pixel_b(raster, 0) * 1e3, coordinates > 2 ? ",0" : "",
+               raster->pixel.a * 1e3, raster->pixel.b * 1e3);
 }
 
 void raster_free(struct raster *raster)
@@ -206,6 +229,31 @@ static void print_edge(struct sink *script, const struct shape *shape,
     sink_print(script, "\n");
 }
 
+/* The body of a part as one closed polygon. */
+static void print_solid(struct sink *script, const struct shape *shape)
+{
+    const struct outline *body = &shape->outlines[0];
+    for (size_t e = 0; e < body->count; e++) {
+        const struct edge *edge = &body->edges[e];
+        int count = edge->radius > 0 ? (int)ceil(fabs(edge->sweep) / CHORD_ANGLE) : 1;
+        for (int k = 0; k < count; k++) {
+            struct vec2 at = edge_point(edge, (double)k / count);
+            sink_print(script, "%.9g %.9g\n", at.a * 1e3, at.b * 1e3);
+        }
+    }
+    sink_print(script, "\n");
+}
+
+static void print_solids(struct sink *script, const struct plane *plane)
+{
+    sink_print(script, "$solids << EOD\n%.9g %.9g\n\n", plane->low.a * 1e3,
+               plane->low.b * 1e3);
+    for (size_t k = 0; k < plane->part_count; k++)
+        if (!has_cuts(&plane->parts[k]))
+            print_solid(script, &plane->parts[k].shape);
+    sink_print(script, "EOD\n");
+}
+
 void picture_outlines(struct sink *script, const struct plane *plane)
 {
     double extent = vec2_length(vec2_sub(plane->high, plane->low));
@@ -218,6 +266,7 @@ void picture_outlines(struct sink *script, const struct plane *plane)
                 print_edge(script, shape, &shape->outlines[o].edges[e], extent);
     }
     sink_print(script, "EOD\n");
+    print_solids(script, plane);
 }
 
 /* Box of a label in pixels from the lower left corner of the axes. */
@@ -310,14 +359,14 @@ double picture_step(double span, int most)
     return 10 * power;
 }
 
-void picture_levels(struct sink *script, const struct raster *raster, const char *name,
-                    double low, double high, double step)
+void picture_levels(struct sink *script, const struct raster *raster, double low,
+                    double high, double step)
 {
     sink_print(script,
                "set contour base\nunset surface\n"
                "set cntrparam levels incremental %.9g,%.9g,%.9g\nset table $levels\n"
                "splot ",
                ceil(low / step) * step, step, high);
-    raster_using(script, raster, name);
-    sink_print(script, ":3 notitle\nunset table\nunset contour\nset surface\n");
+    raster_source(script, raster, 3);
+    sink_print(script, " notitle\nunset table\nunset contour\nset surface\n");
 }

@@ -51,7 +51,8 @@ void raster_sample(struct raster *raster, const double *a, int na, const double 
 /** Multiplies every value. */
 void raster_scale(struct raster *raster, double factor);
 
-/** Sets 1 in every pixel whose centre lies in a part of the plane. STATUS_MEMORY. */
+/** Sets 1 in every pixel whose centre lies in a part of the plane that has cuts.
+ *  STATUS_MEMORY. */
 enum status raster_cover(struct raster *raster, const struct plane *plane) MUST_CHECK;
 
 /** Prints the raster as the gnuplot data block $name. */
@@ -60,11 +61,20 @@ void raster_print(struct sink *script, const struct raster *raster, const char *
 /** Prints `$name matrix using <a in mm>:<b in mm>`. */
 void raster_using(struct sink *script, const struct raster *raster, const char *name);
 
+/** Prints the source of a raster handed over by plot_data, placed in mm, with the given
+ *  number of coordinates (2 for plot, 3 for splot). */
+void raster_source(struct sink *script, const struct raster *raster, int coordinates);
+
+/** True if a part of the plane has cuts: then picture_outlines cannot be filled and a
+ *  cover raster is needed. */
+bool picture_needs_cover(const struct plane *plane);
+
 /** Empties; safe on zeroed and twice. */
 void raster_free(struct raster *raster);
 
 /** Prints the remaining surface of every part as polylines in mm, data block
- *  $outlines. There is at least one line in the block. */
+ *  $outlines, and the parts without cuts as closed polygons, data block $solids. There is
+ *  at least one point in each block. */
 void picture_outlines(struct sink *script, const struct plane *plane);
 
 /** Prints labels with the names of the parts: beside thin parts, inside thick ones,
@@ -76,9 +86,9 @@ void picture_names(struct sink *script, const struct plane *plane,
  *  pieces; 1 if span is not positive. */
 double picture_step(double span, int most);
 
-/** Prints the data block $levels: lines of equal value of data block $name, every
- *  `step` from the first multiple at or above low to high. */
-void picture_levels(struct sink *script, const struct raster *raster, const char *name,
-                    double low, double high, double step);
+/** Prints the data block $levels: lines of equal value of the raster handed over by
+ *  plot_data, every `step` from the first multiple at or above low to high. */
+void picture_levels(struct sink *script, const struct raster *raster, double low,
+                    double high, double step);
 
 #endif

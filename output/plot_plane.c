@@ -45,12 +45,30 @@ static void find_range(const double *values, size_t count, double *low, double *
     }
 }
 
+/* Paints the parts: filled polygons, and pixels for parts with cuts (cover, NULL if
+ * there are none). */
 static void print_parts(struct sink *script, const struct raster *cover)
 {
-    raster_using(script, cover, "cover");
-    sink_print(script, ":(%d):(%d):(%d):(255*$3) with rgbalpha notitle, ",
+    if (cover != NULL) {
+        raster_using(script, cover, "cover");
+        sink_print(script, ":(%d):(%d):(%d):(255*$3) with rgbalpha notitle, ",
+                   PICTURE_PART_GREY, PICTURE_PART_GREY, PICTURE_PART_GREY);
+    }
+    sink_print(script,
+               "$solids with filledcurves closed fs solid fc rgb '#%02x%02x%02x' "
+               "notitle, $outlines with lines lc 'black' lw 1.6 notitle",
                PICTURE_PART_GREY, PICTURE_PART_GREY, PICTURE_PART_GREY);
-    sink_print(script, "$outlines with lines lc 'black' lw 1.6 notitle");
+}
+
+/* Raster of the parts with cuts; *needed is false, and nothing made, without any. */
+static enum status make_cover(struct raster *cover, const struct frame *frame,
+                              const struct plane *plane, bool *needed)
+{
+    *needed = picture_needs_cover(plane);
+    if (!*needed)
+        return STATUS_OK;
+    enum status status = raster_init(cover, frame, 1);
+    return status ? status : raster_cover(cover, plane);
 }
 
 static void print_potential(struct sink *script, enum plane_kind kind,
@@ -66,18 +84,18 @@ static void print_potential(struct sink *script, enum plane_kind kind,
                    plane_kind_key(kind),
                    plane_kind_is_magnetic(kind) ? "magnetic potential" : "potential",
                    step_text, plane_kind_is_magnetic(kind) ? "A" : "V");
-    raster_print(script, map, "map");
-    raster_print(script, cover, "cover");
+    if (cover != NULL)
+        raster_print(script, cover, "cover");
     picture_outlines(script, plane);
-    picture_levels(script, map, "map", low, high, step);
+    picture_levels(script, map, low, high, step);
     picture_axes(script, frame, title);
     picture_names(script, plane, frame);
     sink_print(script, "set cblabel '%s'\n", words_potential(kind));
     if (high > low)
         sink_print(script, "set cbrange [%.9g:%.9g]\n", low, high);
     sink_print(script, "plot ");
-    raster_using(script, map, "map");
-    sink_print(script, ":3 with image notitle, "
+    raster_source(script, map, 2);
+    sink_print(script, " with image notitle, "
                        "$levels using 1:2 with lines lc '#303030' lw 0.8 notitle, ");
     print_parts(script, cover);
     sink_print(script, "\n");
@@ -93,17 +111,20 @@ enum status plot_plane_potential(struct folder *folder, enum plane_kind kind,
     struct raster map = {0}, cover = {0};
     struct plot plot = {0};
     const struct grid *grid = &result->grid;
+    bool cut = false;
     enum status status = raster_init(&map, &frame, PICTURE_MAP_GRAIN);
     if (!status)
-        status = raster_init(&cover, &frame, 1);
-    if (!status)
-        status = raster_cover(&cover, plane);
+        status = make_cover(&cover, &frame, plane, &cut);
     if (!status)
         status = plot_begin(&plot, folder, plot_plane_name(kind), frame.width,
                             frame.height, messages);
     if (!status) {
         raster_sample(&map, grid->a, grid->na, grid->b, grid->nb, result->potential);
-        print_potential(&plot.script, kind, plane, &frame, &map, &cover);
+        print_potential(&plot.script, kind, plane, &frame, &map, cut ? &cover : NULL);
+        status = plot_data(&plot, folder, map.values, (size_t)map.na * (size_t)map.nb,
+                           messages);
+    }
+    if (!status) {
         status = plot_end(&plot, folder, drawn, messages);
     }
     plot_drop(&plot);
@@ -147,7 +168,8 @@ static void print_grid(struct sink *script, const struct plane *plane,
     char title[TITLE_SIZE];
     (void)snprintf(title, sizeof title, "%s: %zu parts, coarsest grid %d by %d lines",
                    plane_kind_key(plane->kind), plane->part_count, grid->na, grid->nb);
-    raster_print(script, cover, "cover");
+    if (cover != NULL)
+        raster_print(script, cover, "cover");
     picture_outlines(script, plane);
     print_grid_lines(script, grid);
     picture_axes(script, frame, title);
@@ -166,14 +188,13 @@ enum status plot_plane_grid(struct folder *folder, const struct plane *plane,
     struct frame frame = plane_frame(plane, PLAIN_RIGHT, GRID_BELOW);
     struct raster cover = {0};
     struct plot plot = {0};
-    enum status status = raster_init(&cover, &frame, 1);
-    if (!status)
-        status = raster_cover(&cover, plane);
+    bool cut = false;
+    enum status status = make_cover(&cover, &frame, plane, &cut);
     if (!status)
         status = plot_begin(&plot, folder, plot_plane_name(plane->kind), frame.width,
                             frame.height, messages);
     if (!status) {
-        print_grid(&plot.script, plane, &frame, grid, &cover);
+        print_grid(&plot.script, plane, &frame, grid, cut ? &cover : NULL);
         status = plot_end(&plot, folder, drawn, messages);
     }
     plot_drop(&plot);

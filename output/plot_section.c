@@ -66,8 +66,7 @@ static void print_map(struct sink *script, const struct result *result,
                    "where negative",
                    step_text);
     raster_scale(map, scale);
-    raster_print(script, map, "map");
-    picture_levels(script, map, "map", low * scale, high * scale, step * scale);
+    picture_levels(script, map, low * scale, high * scale, step * scale);
     picture_axes(script, frame, title);
     sink_print(script, "set cblabel 'ratio error (1e%d)'\n", power);
     if (high > low)
@@ -75,9 +74,9 @@ static void print_map(struct sink *script, const struct result *result,
     print_circle(script, result, frame);
     sink_print(script, "set style textbox opaque fc 'white' noborder margins 1,0.6\n"
                        "plot ");
-    raster_using(script, map, "map");
+    raster_source(script, map, 2);
     sink_print(script,
-               ":3 with image notitle, "
+               " with image notitle, "
                "$levels using 1:($3>-1e-9?$2:NaN) with lines lc 'black' lw 1 notitle, "
                "$levels using 1:($3<-1e-9?$2:NaN) with lines lc 'black' lw 1 dt (3,3) "
                "notitle, "
@@ -107,6 +106,10 @@ enum status plot_section(struct folder *folder, const struct result *result,
         raster_sample(&map, section->x, (int)section->nx, section->y, (int)section->ny,
                       section->ratio_error);
         print_map(&plot.script, result, &frame, &map);
+        status = plot_data(&plot, folder, map.values, (size_t)map.na * (size_t)map.nb,
+                           messages);
+    }
+    if (!status) {
         status = plot_end(&plot, folder, drawn, messages);
     }
     plot_drop(&plot);

@@ -1,123 +1,38 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later */
 
-/* Columns line up without measuring: an entry too long for its column moves the rest to
- * the next line. */
-
 #include "output/sheet.h"
 
 #include <stdio.h>
 #include <string.h>
 
 #include "output/number.h"
+#include "output/sheet_figures.h"
+#include "output/sheet_layout.h"
 #include "output/words.h"
-
-#define WIDTH        88
-#define TITLE_COLUMN 43
-#define VALUE_COLUMN 26
-#define NOTE_INDENT  6
-#define TEXT_SIZE    512
-
-void sheet_wrap(struct sink *sink, int indent, const char *text)
-{
-    int column = 0;
-    while (*(text += strspn(text, " \n"))) {
-        int length = (int)strcspn(text, " \n");
-        if (column && column + 1 + length > WIDTH) {
-            sink_print(sink, "\n");
-            column = 0;
-        }
-        int gap = column ? 1 : indent;
-        sink_print(sink, "%*s%.*s", gap, "", length, text);
-        column += gap + length;
-        text += length;
-    }
-    sink_print(sink, "\n");
-}
-
-static void write_heading(struct sink *sink, const char *text)
-{
-    sink_print(sink, "\n%s\n", text);
-    for (size_t k = 0; text[k]; k++)
-        sink_print(sink, "-");
-    sink_print(sink, "\n");
-}
-
-/* First columns of a row; goes to a new line when the title does not fit. */
-static void write_title(struct sink *sink, const char *text)
-{
-    if (strlen(text) <= TITLE_COLUMN - 3)
-        sink_print(sink, "  %-*s", TITLE_COLUMN - 2, text);
-    else
-        sink_print(sink, "  %s\n%*s", text, TITLE_COLUMN, "");
-}
 
 static void write_limit(struct sink *sink, const struct verdict_item *item)
 {
     const struct limit_rule *rule = geometry_limit_rule(item->limit);
-    char allowed[NUMBER_TEXT], found[NUMBER_TEXT] = "not known", line[TEXT_SIZE];
+    char allowed[NUMBER_TEXT], found[NUMBER_TEXT] = "not known", line[SHEET_TEXT];
     number_quantity(item->allowed, 0, rule->unit, allowed, sizeof allowed);
     if (item->judged)
         number_quantity(item->value, item->uncertainty, rule->unit, found,
                         sizeof found);
     (void)snprintf(line, sizeof line, "%s, %s %s", words_limit(item->limit),
                    rule->at_least ? "at least" : "at most", allowed);
-    write_title(sink, line);
-    sink_print(sink, "%-*s%s\n", VALUE_COLUMN, found, item->met ? "met" : "NOT MET");
-    sheet_wrap(sink, NOTE_INDENT, item->reason);
+    sheet_title(sink, line);
+    sink_print(sink, "%-*s%s\n", SHEET_VALUE_COLUMN, found,
+               item->met ? "met" : "NOT MET");
+    sheet_wrap(sink, SHEET_NOTE_INDENT, item->reason);
 }
 
 static void write_verdict(struct sink *sink, const struct verdict *verdict)
 {
-    char line[TEXT_SIZE];
+    char line[SHEET_TEXT];
     words_verdict(verdict, line, sizeof line);
     sink_print(sink, "\nVerdict: %s\n", line);
     for (size_t k = 0; k < verdict->count; k++)
         write_limit(sink, &verdict->items[k]);
-}
-
-/* "1 3": numbers of the planes, as in the list of planes. */
-static void write_plane_numbers(struct sink *sink, unsigned planes)
-{
-    const char *gap = "";
-    for (unsigned k = 0; k < PLANE_KINDS; k++) {
-        if (!(planes & (1U << k)))
-            continue;
-        sink_print(sink, "%s%u", gap, k + 1);
-        gap = " ";
-    }
-    sink_print(sink, "\n");
-}
-
-static void write_figure(struct sink *sink, const struct figure *figure)
-{
-    char title[TEXT_SIZE], value[NUMBER_TEXT] = "missing", shown[TEXT_SIZE];
-    (void)snprintf(title, sizeof title, "%s%s%s", figure->title,
-                   figure->subject ? ", " : "", figure->subject ? figure->subject : "");
-    write_title(sink, title);
-    if (figure->state != FIGURE_MISSING)
-        number_quantity(figure->value, figure->uncertainty, figure->unit, value,
-                        sizeof value);
-    (void)snprintf(shown, sizeof shown, "%s%s", value,
-                   figure->state == FIGURE_UNSETTLED ? " unsettled" : "");
-    sink_print(sink, "%-*s ", VALUE_COLUMN, shown);
-    write_plane_numbers(sink, figure->planes);
-    if (figure->note)
-        sheet_wrap(sink, NOTE_INDENT, figure->note);
-}
-
-static void write_figures(struct sink *sink, const struct figures *figures)
-{
-    for (int group = 0; group < FIGURE_GROUPS; group++) {
-        bool opened = false;
-        for (size_t k = 0; k < figures->count; k++) {
-            if ((int)figures->items[k].group != group)
-                continue;
-            if (!opened)
-                write_heading(sink, words_group((enum figure_group)group));
-            opened = true;
-            write_figure(sink, &figures->items[k]);
-        }
-    }
 }
 
 static void write_probe(struct sink *sink, const struct geometry *geometry,
@@ -127,7 +42,7 @@ static void write_probe(struct sink *sink, const struct geometry *geometry,
     bool magnetic = plane_kind_is_magnetic(kind);
     const char *axes[2] = {axis_key(plane_kind_axis(kind, 0)),
                            axis_key(plane_kind_axis(kind, 1))};
-    char place[TEXT_SIZE], text[NUMBER_TEXT];
+    char place[SHEET_TEXT], text[NUMBER_TEXT];
     (void)snprintf(place, sizeof place, "probe %zu, %s, %s = %.6g mm, %s = %.6g mm",
                    probe->probe + 1, plane_kind_key(kind), axes[0], probe->at.a * 1e3,
                    axes[1], probe->at.b * 1e3);
@@ -150,7 +65,7 @@ static void write_probes(struct sink *sink, const struct result *result)
 {
     if (!result->probe_count)
         return;
-    write_heading(sink, "Probes");
+    sheet_heading(sink, "Probes");
     for (size_t k = 0; k < result->probe_count; k++)
         write_probe(sink, result->geometry, &result->probes[k]);
 }
@@ -181,18 +96,18 @@ static void write_plane(struct sink *sink, enum plane_kind kind,
 
 static void write_assumptions(struct sink *sink, const struct result *result)
 {
-    write_heading(sink, "What solving in two dimensions takes for granted");
+    sheet_heading(sink, "What solving in two dimensions takes for granted");
     for (int k = 0; k < PLANE_KINDS; k++) {
         if (!result->planes[k].present)
             continue;
         sink_print(sink, "  %s\n", plane_kind_key((enum plane_kind)k));
-        sheet_wrap(sink, NOTE_INDENT, words_assumption((enum plane_kind)k));
+        sheet_wrap(sink, SHEET_NOTE_INDENT, words_assumption((enum plane_kind)k));
     }
 }
 
 static void write_cautions(struct sink *sink)
 {
-    write_heading(sink, "Cautions");
+    sheet_heading(sink, "Cautions");
     for (size_t k = 0; words_caution(k); k++)
         sheet_wrap(sink, 2, words_caution(k));
 }
@@ -207,9 +122,9 @@ void sheet_write(struct sink *sink, const struct result *result)
     sink_print(sink, "\nx along the electric field, y from pole to pole, z along the "
                      "beam. 1.234(5) means\n1.234 with an uncertainty of 0.005. The "
                      "last column names the planes used.\n");
-    write_figures(sink, &result->figures);
+    sheet_figures(sink, &result->figures);
     write_probes(sink, result);
-    write_heading(sink, "Planes and grids");
+    sheet_heading(sink, "Planes and grids");
     for (int k = 0; k < PLANE_KINDS; k++)
         write_plane(sink, (enum plane_kind)k, &result->planes[k]);
     write_assumptions(sink, result);

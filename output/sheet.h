@@ -11,7 +11,4 @@
 /** Prints the sheet. The caller closes the sink. */
 void sheet_write(struct sink *sink, const struct result *result);
 
-/** Prints text indented and wrapped at 88 columns. */
-void sheet_wrap(struct sink *sink, int indent, const char *text);
-
 #endif

@@ -1,18 +1,16 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later */
 #include "shared/mem.h"
 
-#include <stdatomic.h>
 #include <stdint.h>
 #include <stdlib.h>
 #include <string.h>
 
 /* The only state in the library below main: a countdown that tests arm. */
-static atomic_long failure_countdown = 0;
+static long failure_countdown = 0;
 
 static int request_refused(size_t n, size_t size)
 {
-    if (atomic_load(&failure_countdown) > 0 &&
-        atomic_fetch_sub(&failure_countdown, 1) == 1)
+    if (failure_countdown > 0 && --failure_countdown == 0)
         return 1;
     return size != 0 && n > SIZE_MAX / size;
 }
@@ -50,5 +48,5 @@ void mem_free(void *array)
 
 void mem_fail_at(long k)
 {
-    atomic_store(&failure_countdown, k);
+    failure_countdown = k;
 }

@@ -72,16 +72,6 @@ void messages_add(struct messages *messages, enum severity severity, struct plac
         messages->errors++;
 }
 
-void messages_move(struct messages *to, struct messages *from)
-{
-    for (size_t k = 0; to != NULL && k < from->count; k++)
-        messages_add(to, from->items[k].severity, from->items[k].place, "%s",
-                     from->items[k].text);
-    if (to != NULL)
-        to->lost += from->lost;
-    messages_free(from);
-}
-
 static const char *severity_word(enum severity severity)
 {
     switch (severity) {

@@ -43,9 +43,6 @@ void messages_set_source(struct messages *messages, const char *file,
 void messages_add(struct messages *messages, enum severity severity, struct place place,
                   const char *format, ...) PRINTF_LIKE(4, 5);
 
-/** Appends the messages of `from` to `to` and empties `from`. */
-void messages_move(struct messages *to, struct messages *from);
-
 /** Text of message k as shown to the user: `file:line:column: error: text`, then the
  *  source line and a caret under the column. Caller frees with mem_free; NULL if
  *  memory ran out. */

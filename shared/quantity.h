@@ -21,16 +21,16 @@ struct quantity {
     struct dimension dimension;
 };
 
-#define DIMENSION_NONE   ((struct dimension){0, 0, 0, 0, 0})
-#define DIMENSION_LENGTH ((struct dimension){1, 0, 0, 0, 0})
-#define DIMENSION_MASS   ((struct dimension){0, 1, 0, 0, 0})
-#define DIMENSION_CHARGE ((struct dimension){0, 0, 1, 1, 0})
-#define DIMENSION_ENERGY ((struct dimension){2, 1, -2, 0, 0})
-#define DIMENSION_SPEED  ((struct dimension){1, 0, -1, 0, 0})
-#define DIMENSION_VOLT   ((struct dimension){2, 1, -3, -1, 0})
-#define DIMENSION_AMPERE ((struct dimension){0, 0, 0, 1, 0})
+#define DIMENSION_NONE           ((struct dimension){0, 0, 0, 0, 0})
+#define DIMENSION_LENGTH         ((struct dimension){1, 0, 0, 0, 0})
+#define DIMENSION_MASS           ((struct dimension){0, 1, 0, 0, 0})
+#define DIMENSION_CHARGE         ((struct dimension){0, 0, 1, 1, 0})
+#define DIMENSION_ENERGY         ((struct dimension){2, 1, -2, 0, 0})
+#define DIMENSION_SPEED          ((struct dimension){1, 0, -1, 0, 0})
+#define DIMENSION_VOLT           ((struct dimension){2, 1, -3, -1, 0})
+#define DIMENSION_AMPERE         ((struct dimension){0, 0, 0, 1, 0})
 #define DIMENSION_VOLT_PER_METRE ((struct dimension){1, 1, -3, -1, 0})
-#define DIMENSION_TEMPERATURE ((struct dimension){0, 0, 0, 0, 1})
+#define DIMENSION_TEMPERATURE    ((struct dimension){0, 0, 0, 0, 1})
 
 bool dimension_equal(struct dimension p, struct dimension q);
 

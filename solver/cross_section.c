@@ -97,7 +97,8 @@ enum status section_ratio_error(const struct section_source *source, double refe
     return status;
 }
 
-static enum status section_allocate(struct section *s, const struct section_source *from)
+static enum status section_allocate(struct section *s,
+                                    const struct section_source *from)
 {
     const size_t n = SECTION_POINTS;
     double **electric[] = {&s->e_x, &s->e_y}, **magnetic[] = {&s->b_x, &s->b_y};

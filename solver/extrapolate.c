@@ -6,9 +6,9 @@
 /* Relative size of round-off in a solved figure. */
 #define NOISE 1e-12
 /* Share of the first correction that the uncertainty never goes below. */
-#define LEAST_SHARE 0.03
+#define LEAST_SHARE 0.06
 /* Safety factor on the last correction of the series. */
-#define SERIES_FACTOR 2.0
+#define SERIES_FACTOR 4.0
 /* A change that falls below this share of the one before (order 3 and more) is not a
  * series yet. */
 #define FAST_SHARE 0.125
@@ -30,8 +30,8 @@ static struct estimate from_series(const double *v, double order, double noise)
     const double second = v[2] + (v[2] - v[1]) / 3.0;
     const double value = second + (second - first) / 7.0;
     const double least = LEAST_SHARE * fabs(v[2] - second);
-    return (struct estimate){value, fmax(SERIES_FACTOR * fabs(value - second), least) + noise,
-                             order, true};
+    return (struct estimate){
+        value, fmax(SERIES_FACTOR * fabs(value - second), least) + noise, order, true};
 }
 
 static struct estimate from_order(const double *v, double order, double noise)
@@ -58,7 +58,7 @@ struct estimate extrapolate(const double *values, int levels, double scale)
 {
     for (int k = 0; k < levels; k++)
         if (!isfinite(values[k]))
-            return (struct estimate){values[levels - 1], INFINITY, 0.0, false};
+            return (struct estimate){values[levels - 1], (double)INFINITY, 0.0, false};
     for (int k = 0; k < levels && scale == 0.0; k++)
         scale = fmax(scale, fabs(values[k]));
     const double noise = NOISE * scale;
@@ -66,7 +66,8 @@ struct estimate extrapolate(const double *values, int levels, double scale)
         return from_two(values[0], values[1], noise);
     const double d1 = values[1] - values[0], d2 = values[2] - values[1];
     if (fabs(d1) <= 10.0 * noise && fabs(d2) <= 10.0 * noise)
-        return (struct estimate){values[2], fmax(fabs(d1), fabs(d2)) + noise, 0.0, true};
+        return (struct estimate){values[2], fmax(fabs(d1), fabs(d2)) + noise, 0.0,
+                                 true};
     const double order = d1 * d2 > 0.0 ? log2(d1 / d2) : 0.0;
     if (fabs(d2) <= FAST_SHARE * fabs(d1))
         return from_last_change(values, order, noise);

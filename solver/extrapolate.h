@@ -17,8 +17,8 @@ struct estimate {
 /** Estimate from values[levels], coarse to fine, 2 <= levels <= 3. scale (> 0) is the
  *  size against which changes are judged; 0 takes the largest |value|.
  *  Two grids: order 2 is assumed. Three: where the measured order lies between 1.5 and
- *  3, the error series h^2, h^3 of the graded grids is summed, and twice the change by
- *  its second term is the uncertainty; below that the measured order itself is used;
+ *  3, the error series h^2, h^3 of the graded grids is summed, and four times the
+ *  change by its second term is the uncertainty; below that the measured order itself is used;
  *  above it, and where the changes alternate but fall fast, the finest value stands with
  *  its last change as uncertainty. Changes that do not fall are unsettled unless they
  *  are small. A value that is not finite gives an infinite uncertainty.

@@ -22,8 +22,8 @@ static void unsettled_note(const double *values, int count, const char *note,
 {
     int used = snprintf(text, size, "the grids do not converge on it (");
     for (int l = 0; l < count && used > 0 && (size_t)used < size; l++)
-        used += snprintf(text + used, size - (size_t)used, "%s%.6g",
-                         l > 0 ? ", " : "", values[l]);
+        used += snprintf(text + used, size - (size_t)used, "%s%.6g", l > 0 ? ", " : "",
+                         values[l]);
     if (used > 0 && (size_t)used < size)
         (void)snprintf(text + used, size - (size_t)used, ")%s%s",
                        note != NULL ? "; " : "", note != NULL ? note : "");

@@ -15,7 +15,7 @@
 #include "solver/stencil.h"
 
 enum {
-    WINDOW = 3,                                /* lines seen to each side */
+    WINDOW = 3, /* lines seen to each side */
     WINDOW_SIDE = 2 * WINDOW + 1,
     WINDOW_NODES = WINDOW_SIDE * WINDOW_SIDE,
     POINTS_MAX = WINDOW_NODES * LEG_COUNT + 1, /* nodes and the ends of their legs */
@@ -30,8 +30,8 @@ struct field {
     struct harmonic *fits; /* [fit_count] */
     int fit_count;
     int fit_capacity;
-    double *work;         /* scratch of harmonic_fit */
-    struct span *spans;   /* scratch of line_is_clear */
+    double *work;       /* scratch of harmonic_fit */
+    struct span *spans; /* scratch of line_is_clear */
     size_t span_capacity;
 };
 
@@ -165,8 +165,7 @@ static enum status fits_grow(struct field *field)
     if (field->fit_count < field->fit_capacity)
         return STATUS_OK;
     int capacity = 2 * field->fit_capacity + 256;
-    struct harmonic *grown =
-        mem_resize(field->fits, (size_t)capacity, sizeof *grown);
+    struct harmonic *grown = mem_resize(field->fits, (size_t)capacity, sizeof *grown);
     if (grown == NULL)
         return STATUS_MEMORY;
     field->fits = grown;
@@ -275,7 +274,8 @@ static int corner_groups(const struct grid *grid, int i, int j, int group[4])
     for (int pass = 0; pass < 2; pass++)
         for (int e = 0; e < 4; e++) {
             const int p = edges[e][0], q = edges[e][1];
-            if (group[p] < 0 || group[q] < 0 || grid_cut(grid, node[p], legs[e]) != NULL)
+            if (group[p] < 0 || group[q] < 0 ||
+                grid_cut(grid, node[p], legs[e]) != NULL)
                 continue;
             const int least = group[p] < group[q] ? group[p] : group[q];
             group[p] = group[q] = least;
@@ -335,7 +335,7 @@ static enum status blend_corner(struct field *field, struct vec2 at, int i, int 
 static int nearest_free(const struct grid *grid, struct vec2 at, int i, int j)
 {
     int best = -1;
-    double shortest = INFINITY;
+    double shortest = (double)INFINITY;
     for (int dj = -SEARCH; dj <= SEARCH + 1; dj++)
         for (int di = -SEARCH; di <= SEARCH + 1; di++) {
             const int p = i + di, q = j + dj;
@@ -414,7 +414,7 @@ static bool fold_point(const struct grid *grid, struct vec2 *at, struct vec2 *fl
     for (int axis = 0; axis < 2; axis++) {
         double *x = coordinate[axis];
         const double slack = 1e-9 * (high[axis] - low[axis]);
-        const bool below = *x < low[axis], above = *x > high[axis];
+        const bool below = *x<low[axis], above = *x> high[axis];
         if (!below && !above)
             continue;
         const double edge = below ? low[axis] : high[axis];

@@ -91,9 +91,10 @@ void field_at_nodes(const struct grid *grid, const double *phi,
             gradient_a[n] = free_slope(&s, LEG_WEST, phi[n], phi, part_value);
             gradient_b[n] = free_slope(&s, LEG_SOUTH, phi[n], phi, part_value);
         } else {
-            gradient_a[n] = fixed_slope(grid, phi, part_value, n, LEG_WEST, i, grid->na, 1);
-            gradient_b[n] = fixed_slope(grid, phi, part_value, n, LEG_SOUTH, j, grid->nb,
-                                        grid->na);
+            gradient_a[n] =
+                fixed_slope(grid, phi, part_value, n, LEG_WEST, i, grid->na, 1);
+            gradient_b[n] =
+                fixed_slope(grid, phi, part_value, n, LEG_SOUTH, j, grid->nb, grid->na);
         }
     }
 }

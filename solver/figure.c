@@ -41,8 +41,7 @@ const struct figure *figures_find(const struct figures *figures, const char *nam
         const struct figure *f = &figures->items[k];
         if (strcmp(f->name, name) != 0)
             continue;
-        if (subject == NULL ||
-            (f->subject != NULL && strcmp(f->subject, subject) == 0))
+        if (subject == NULL || (f->subject != NULL && strcmp(f->subject, subject) == 0))
             return f;
     }
     return NULL;

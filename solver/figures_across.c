@@ -68,8 +68,10 @@ static void add_map(struct maker *maker, const struct view *view,
     if (map.present) {
         peak = map_peak(&map, &x, &y);
         rms = map_rms(&map);
-        (void)snprintf(note, sizeof note, "|x| <= %.4g mm, |y| <= %.4g mm; at x = %.4g, "
-                       "y = %.4g mm%s", view->geometry->beam.half_x * 1e3,
+        (void)snprintf(note, sizeof note,
+                       "|x| <= %.4g mm, |y| <= %.4g mm; at x = %.4g, "
+                       "y = %.4g mm%s",
+                       view->geometry->beam.half_x * 1e3,
                        view->geometry->beam.half_y * 1e3, x * 1e3, y * 1e3,
                        substitute(source));
     }
@@ -96,9 +98,8 @@ static enum status circle_error(const struct section_source *source, double refe
     for (int k = 0; k < CIRCLE_POINTS && *open; k++) {
         const double angle = 2.0 * PI * k / CIRCLE_POINTS;
         double error;
-        enum status status =
-            section_ratio_error(source, reference, radius * cos(angle),
-                                radius * sin(angle), &error, open);
+        enum status status = section_ratio_error(source, reference, radius * cos(angle),
+                                                 radius * sin(angle), &error, open);
         if (status != STATUS_OK)
             return status;
         *worst = fmax(*worst, fabs(error));
@@ -135,14 +136,12 @@ static enum status find_even_circle(const struct section_source *source,
         if (status != STATUS_OK || !open)
             return status;
         if (error > bound) {
-            const double t =
-                before > 0.0 && k > 1
-                    ? log(bound / before) / log(error / before)
-                    : bound / error;
+            const double t = before > 0.0 && k > 1
+                                 ? log(bound / before) / log(error / before)
+                                 : bound / error;
             const double last = (k - 1) * step;
-            found->radius = k > 1 && before > 0.0
-                                ? last * pow(k * step / last, t)
-                                : last + t * step;
+            found->radius = k > 1 && before > 0.0 ? last * pow(k * step / last, t)
+                                                  : last + t * step;
             found->met_wall = false;
             return STATUS_OK;
         }
@@ -197,7 +196,7 @@ static double expansion_radius(const struct geometry *g)
 {
     if (g->beam.has_footprint)
         return fmax(g->beam.half_x, g->beam.half_y);
-    double reach = INFINITY;
+    double reach = (double)INFINITY;
     for (int k = 0; k < PLANE_KINDS; k++)
         if (g->planes[k].present && !plane_kind_is_along((enum plane_kind)k))
             reach = fmin(reach, g->planes[k].high.b - g->planes[k].low.b);
@@ -234,10 +233,10 @@ static void add_expansions(struct maker *maker, const struct view *view)
                                           "difference e_n - b_n", "1", 1.0};
     struct expansion e, b;
     bool good_e = false, good_b = false;
-    enum status status =
-        expand(maker, view->planes[PLANE_ELECTRIC_ACROSS], radius,
-               (struct figure_key){"expansion_electric", "expansion of E, e_n", "1", 1.0},
-               &e, &good_e);
+    enum status status = expand(
+        maker, view->planes[PLANE_ELECTRIC_ACROSS], radius,
+        (struct figure_key){"expansion_electric", "expansion of E, e_n", "1", 1.0}, &e,
+        &good_e);
     if (status == STATUS_OK)
         status = expand(
             maker, view->planes[PLANE_MAGNETIC_ACROSS], radius,

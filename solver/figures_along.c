@@ -43,19 +43,17 @@ enum status figures_beam(const struct view *view, struct figures *figures)
 static void add_centre(struct maker *maker, const struct path *path)
 {
     maker->planes = plane_bit(PLANE_ELECTRIC_ALONG);
-    maker_add_or_miss(
-        maker,
-        (struct figure_key){"centre_electric_field", "E_x at the reference point", "V/m",
-                            0.0},
-        path->e_centre, NULL, NULL,
-        path->e_x[0] != NULL ? NULL : "needs electric_along");
+    maker_add_or_miss(maker,
+                      (struct figure_key){"centre_electric_field",
+                                          "E_x at the reference point", "V/m", 0.0},
+                      path->e_centre, NULL, NULL,
+                      path->e_x[0] != NULL ? NULL : "needs electric_along");
     maker->planes = plane_bit(PLANE_MAGNETIC_ALONG);
-    maker_add_or_miss(
-        maker,
-        (struct figure_key){"centre_flux_density", "B_y at the reference point", "T",
-                            0.0},
-        path->b_centre, NULL, NULL,
-        path->b_y[0] != NULL ? NULL : "needs magnetic_along");
+    maker_add_or_miss(maker,
+                      (struct figure_key){"centre_flux_density",
+                                          "B_y at the reference point", "T", 0.0},
+                      path->b_centre, NULL, NULL,
+                      path->b_y[0] != NULL ? NULL : "needs magnetic_along");
 }
 
 static double balanced_speed(const struct path *path)
@@ -71,27 +69,27 @@ static void add_speeds(struct maker *maker, const struct geometry *geometry,
     const double centre = ratio_reference(path);
     const double balanced = both ? balanced_speed(path) : 0.0;
     const char *const lack = both ? NULL : NEEDS_BOTH;
-    const char *const lack_wanted = !both                              ? NEEDS_BOTH
-                                    : !geometry->beam.has_particle     ? NEEDS_PARTICLE
-                                                                       : NULL;
+    const char *const lack_wanted = !both                          ? NEEDS_BOTH
+                                    : !geometry->beam.has_particle ? NEEDS_PARTICLE
+                                                                   : NULL;
     const double wanted = geometry->beam.has_particle ? geometry->beam.speed : 1.0;
     char note[NOTE_SIZE];
     (void)snprintf(note, sizeof note, "integrals from z = %.6g mm to %.6g mm",
                    path->z[0] * 1e3, path->z[PATH_POINTS - 1] * 1e3);
     maker_add_or_miss(maker,
                       (struct figure_key){"centre_pass_speed",
-                                          "pass speed E/B at the reference point", "m/s",
-                                          0.0},
+                                          "pass speed E/B at the reference point",
+                                          "m/s", 0.0},
                       centre, NULL, NULL, lack);
     maker_add_or_miss(maker,
                       (struct figure_key){"balanced_speed",
                                           "balanced speed (no sideways impulse)", "m/s",
                                           0.0},
                       balanced, NULL, note, lack);
-    maker_add_or_miss(maker,
-                      (struct figure_key){"detuning", "detuning: balanced/wanted - 1",
-                                          "1", 1.0},
-                      balanced / wanted - 1.0, NULL, NULL, lack_wanted);
+    maker_add_or_miss(
+        maker,
+        (struct figure_key){"detuning", "detuning: balanced/wanted - 1", "1", 1.0},
+        balanced / wanted - 1.0, NULL, NULL, lack_wanted);
     maker_add_or_miss(maker,
                       (struct figure_key){"centre_detuning",
                                           "centre detuning: pass/wanted - 1", "1", 1.0},
@@ -112,10 +110,9 @@ static void add_evenness(struct maker *maker, const struct ratio_summary *s,
     (void)snprintf(force, sizeof force,
                    "|E - u_ref B| / E_centre, whole path; at z = %.4g mm",
                    s->imbalance_z * 1e3);
-    maker_add_or_miss(maker,
-                      (struct figure_key){"flat_length", "flat length on the axis", "m",
-                                          0.0},
-                      s->flat_to - s->flat_from, NULL, flat, lack);
+    maker_add_or_miss(
+        maker, (struct figure_key){"flat_length", "flat length on the axis", "m", 0.0},
+        s->flat_to - s->flat_from, NULL, flat, lack);
     maker_add_or_miss(maker,
                       (struct figure_key){"ratio_error_peak_along",
                                           "ratio error on the axis, peak", "1", 1.0},
@@ -132,7 +129,8 @@ static void add_evenness(struct maker *maker, const struct ratio_summary *s,
                           s->bundle_peak, NULL, zone, lack);
     maker_add_or_miss(maker,
                       (struct figure_key){"force_imbalance_peak",
-                                          "force imbalance on the axis, peak", "1", 1.0},
+                                          "force imbalance on the axis, peak", "1",
+                                          1.0},
                       s->imbalance, NULL, force, lack);
 }
 

@@ -87,8 +87,8 @@ static double shape_mismatch(const struct path *path)
 {
     double difference[PATH_POINTS];
     for (int k = 0; k < PATH_POINTS; k++)
-        difference[k] = fabs(path->e_x[0][k] / path->e_centre -
-                             path->b_y[0][k] / path->b_centre);
+        difference[k] =
+            fabs(path->e_x[0][k] / path->e_centre - path->b_y[0][k] / path->b_centre);
     return 0.5 * path_integral(path, difference, 0, PATH_POINTS - 1);
 }
 
@@ -111,13 +111,15 @@ static void add_mismatch(struct maker *maker, const struct path *path,
                       b->entrance - e->entrance, NULL, NULL, lack);
     maker_add_or_miss(maker,
                       (struct figure_key){"exit_mismatch",
-                                          "E reaches further out, exit", "m", e->length},
+                                          "E reaches further out, exit", "m",
+                                          e->length},
                       e->exit - b->exit, NULL, NULL, lack);
-    maker_add_or_miss(maker,
-                      (struct figure_key){"shape_mismatch",
-                                          "shape mismatch, half integral |F_E - F_B| dz",
-                                          "m", e->length},
-                      shape, NULL, NULL, lack);
+    maker_add_or_miss(
+        maker,
+        (struct figure_key){"shape_mismatch",
+                            "shape mismatch, half integral |F_E - F_B| dz", "m",
+                            e->length},
+        shape, NULL, NULL, lack);
 }
 
 enum status figures_fringe(const struct view *view, const struct path *path,

@@ -62,6 +62,23 @@ static void surface_note(const struct surface_peak *peak, const struct plane *pl
                    axis_key(plane_kind_axis(plane->kind, 1)), peak->at.b * 1e3, corner);
 }
 
+/* A part that touches a wall of the region is one conductor with it and has no
+ * capacitance of its own. */
+static bool touches_wall(const struct plane *plane, const struct part *part)
+{
+    struct vec2 low, high;
+    shape_bounds(&part->shape, &low, &high);
+    const double slack =
+        1e-9 * fmin(plane->high.a - plane->low.a, plane->high.b - plane->low.b);
+    const bool at[SIDE_COUNT] = {
+        low.a <= plane->low.a + slack, high.a >= plane->high.a - slack,
+        low.b <= plane->low.b + slack, high.b >= plane->high.b - slack};
+    for (int s = 0; s < SIDE_COUNT; s++)
+        if (at[s] && plane->sides[s].kind == SIDE_WALL)
+            return true;
+    return false;
+}
+
 static void add_surface(struct maker *maker, const struct plane_solution *plane,
                         size_t part)
 {
@@ -96,11 +113,14 @@ static void add_electric(struct maker *maker, const struct plane_solution *plane
         maker_add(maker,
                   (struct figure_key){"charge", "charge per metre", "C/m", scale},
                   VACUUM_PERMITTIVITY * plane->part_flux[p], name, NULL);
-        maker_add(maker,
-                  (struct figure_key){"capacitance", "capacitance per metre", "F/m",
-                                      0.0},
-                  VACUUM_PERMITTIVITY * plane->self_flux[p], name,
-                  "to everything else, earthed");
+        maker_add_or_miss(
+            maker,
+            (struct figure_key){"capacitance", "capacitance per metre", "F/m", 0.0},
+            VACUUM_PERMITTIVITY * plane->self_flux[p], name,
+            "to everything else, earthed",
+            touches_wall(plane->plane, &plane->plane->parts[p])
+                ? "the part touches a wall of the region"
+                : NULL);
         add_surface(maker, plane, p);
     }
     add_energy(maker, plane);
@@ -111,8 +131,7 @@ static void add_magnetic(struct maker *maker, const struct plane_solution *plane
     const double scale = VACUUM_PERMEABILITY * potential_scale(plane);
     maker->planes = plane_bit(plane->plane->kind);
     for (size_t p = 0; p < plane->plane->part_count; p++)
-        maker_add(maker,
-                  (struct figure_key){"flux", "flux per metre", "Wb/m", scale},
+        maker_add(maker, (struct figure_key){"flux", "flux per metre", "Wb/m", scale},
                   VACUUM_PERMEABILITY * plane->part_flux[p],
                   plane->plane->parts[p].name, NULL);
 }

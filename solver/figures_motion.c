@@ -11,7 +11,9 @@
 #include "solver/ratio.h"
 #include "solver/track.h"
 
-enum { TRACK_STEPS = PATH_POINTS - 1, NOTE_SIZE = 160 };
+enum { STEPS_LEAST = PATH_POINTS - 1, STEPS_MOST = 100000, NOTE_SIZE = 160 };
+
+#define STEPS_PER_RADIUS 40.0 /* of the cyclotron circle in the centre field */
 
 #define SMALL_STEP 1e-3 /* relative change of speed or mass for dispersions */
 
@@ -34,13 +36,12 @@ static double speed_of_energy(double mass, double energy)
 /* Difference of two neighbours per relative change. */
 static enum status dispersion(const struct view *view, const struct path *path,
                               const struct particle neighbours[2], double drift,
-                              double *at_exit, double *at_slit, bool *lost)
+                              int steps, double *at_exit, double *at_slit, bool *lost)
 {
     struct exit_state ends[2];
     for (int k = 0; k < 2; k++) {
-        enum status status =
-            track_particle(view, &neighbours[k], path->z[0], path->z[PATH_POINTS - 1],
-                           TRACK_STEPS, &ends[k]);
+        enum status status = track_particle(view, &neighbours[k], path->z[0],
+                                            path->z[PATH_POINTS - 1], steps, &ends[k]);
         if (status != STATUS_OK)
             return status;
         *lost = *lost || ends[k].lost;
@@ -52,12 +53,29 @@ static enum status dispersion(const struct view *view, const struct path *path,
     return STATUS_OK;
 }
 
+static double cyclotron_radius(const struct beam *beam, const struct path *path)
+{
+    const double beta = beam->speed / SPEED_OF_LIGHT;
+    const double momentum = beam->mass * beam->speed / sqrt(1.0 - beta * beta);
+    return momentum / fabs(beam->charge * path->b_centre);
+}
+
+/* Steps along the path; more where the circle is small against it. */
+static int steps_for(const struct beam *beam, const struct path *path)
+{
+    const double length = path->z[PATH_POINTS - 1] - path->z[0];
+    const double wanted =
+        ceil(STEPS_PER_RADIUS * length / cyclotron_radius(beam, path));
+    return (int)fmin(fmax(wanted, STEPS_LEAST), STEPS_MOST);
+}
+
 static enum status summarise(const struct view *view, const struct path *path,
                              double drift, struct motion_summary *s)
 {
     const struct beam *beam = &view->geometry->beam;
     const struct particle wanted = {beam->mass, beam->charge, beam->speed};
     struct particle speeds[2] = {wanted, wanted}, masses[2] = {wanted, wanted};
+    const int steps = steps_for(beam, path);
     double unused;
     for (int k = 0; k < 2; k++) {
         const double factor = 1.0 + (k == 0 ? -SMALL_STEP : SMALL_STEP);
@@ -66,13 +84,12 @@ static enum status summarise(const struct view *view, const struct path *path,
         masses[k].speed = speed_of_energy(masses[k].mass, beam->energy);
     }
     enum status status = track_particle(view, &wanted, path->z[0],
-                                        path->z[PATH_POINTS - 1], TRACK_STEPS,
-                                        &s->wanted);
+                                        path->z[PATH_POINTS - 1], steps, &s->wanted);
     if (status == STATUS_OK)
-        status = dispersion(view, path, speeds, drift, &s->speed_dispersion,
+        status = dispersion(view, path, speeds, drift, steps, &s->speed_dispersion,
                             &s->speed_dispersion_slit, &s->lost);
     if (status == STATUS_OK)
-        status = dispersion(view, path, masses, drift, &unused,
+        status = dispersion(view, path, masses, drift, steps, &unused,
                             &s->mass_dispersion_slit, &s->lost);
     return status;
 }
@@ -83,9 +100,7 @@ static void add_circle(struct maker *maker, const struct view *view,
     const struct beam *beam = &view->geometry->beam;
     double radius = 0.0, length = 0.0;
     if (lack == NULL) {
-        const double beta = beam->speed / SPEED_OF_LIGHT;
-        const double momentum = beam->mass * beam->speed / sqrt(1.0 - beta * beta);
-        radius = momentum / fabs(beam->charge * path->b_centre);
+        radius = cyclotron_radius(beam, path);
         length = path_integral(path, path->b_y[0], 0, PATH_POINTS - 1) / path->b_centre;
     }
     maker_add_or_miss(maker,
@@ -93,23 +108,26 @@ static void add_circle(struct maker *maker, const struct view *view,
                                           "cyclotron radius R in the centre field", "m",
                                           0.0},
                       radius, NULL, NULL, lack);
-    maker_add_or_miss(maker,
-                      (struct figure_key){"cyclotron_phase",
-                                          "cyclotron phase L_B/R", "rad", 0.0},
-                      lack == NULL ? length / radius : 0.0, NULL, NULL, lack);
+    maker_add_or_miss(
+        maker,
+        (struct figure_key){"cyclotron_phase", "cyclotron phase L_B/R", "rad", 0.0},
+        lack == NULL ? length / radius : 0.0, NULL, NULL, lack);
 }
 
 static void add_wanted(struct maker *maker, const struct motion_summary *s,
                        const char *lack)
 {
+    maker_add_or_miss(
+        maker, (struct figure_key){"kick", "kick of the wanted particle", "rad", 1e-3},
+        s->wanted.slope, NULL,
+        "dx/dz at the end of the path, followed "
+        "through both fields",
+        lack);
     maker_add_or_miss(maker,
-                      (struct figure_key){"kick", "kick of the wanted particle", "rad",
-                                          1e-3},
-                      s->wanted.slope, NULL, "dx/dz at the end of the path, followed "
-                                             "through both fields", lack);
-    maker_add_or_miss(maker,
-                      (struct figure_key){"offset", "sideways offset of the wanted "
-                                                    "particle", "m", 1e-3},
+                      (struct figure_key){"offset",
+                                          "sideways offset of the wanted "
+                                          "particle",
+                                          "m", 1e-3},
                       s->wanted.x, NULL, "x at the end of the path", lack);
 }
 
@@ -125,9 +143,11 @@ static void add_separation(struct maker *maker, const struct beam *beam, double 
     else if (lack_slit == NULL && beam->slit_at < to)
         lack_slit = "the slit stands before the end of the path";
     if (lack_slit == NULL)
-        (void)snprintf(note, sizeof note, "slit %.6g mm wide at z = %.6g mm; size and divergence of the beam "
-                       "come on top",
-                       beam->slit_width * 1e3, beam->slit_at * 1e3);
+        (void)snprintf(
+            note, sizeof note,
+            "slit %.6g mm wide at z = %.6g mm; size and divergence of the beam "
+            "come on top",
+            beam->slit_width * 1e3, beam->slit_at * 1e3);
     const double width = lack_slit == NULL ? beam->slit_width : 1.0;
     maker_add_or_miss(maker,
                       (struct figure_key){"speed_dispersion",
@@ -141,7 +161,8 @@ static void add_separation(struct maker *maker, const struct beam *beam, double 
                       s->speed_dispersion_slit, NULL, note, lack_slit);
     maker_add_or_miss(maker,
                       (struct figure_key){"speed_resolution",
-                                          "speed resolution v/dv of the slit", "1", 0.0},
+                                          "speed resolution v/dv of the slit", "1",
+                                          0.0},
                       fabs(s->speed_dispersion_slit) / width, NULL, note, lack_slit);
     maker_add_or_miss(maker,
                       (struct figure_key){"mass_resolution",
@@ -153,10 +174,9 @@ enum status figures_motion(const struct view *view, const struct path *path,
                            struct figures *figures)
 {
     const struct beam *beam = &view->geometry->beam;
-    struct maker maker = {figures, FIGURE_ALONG,
-                          plane_bit(PLANE_ELECTRIC_ALONG) |
-                              plane_bit(PLANE_MAGNETIC_ALONG),
-                          STATUS_OK};
+    struct maker maker = {
+        figures, FIGURE_ALONG,
+        plane_bit(PLANE_ELECTRIC_ALONG) | plane_bit(PLANE_MAGNETIC_ALONG), STATUS_OK};
     struct motion_summary s = {0};
     char lost[NOTE_SIZE];
     const char *lack = NULL;

@@ -16,7 +16,9 @@
  *  may all vanish by symmetry), 0 without any flux. Symmetry sides of kind mirror have
  *  none. STATUS_MEMORY.
  *  Order  2 on graded grids (the contour's distance from the surface does not matter:
- *         the difference equation of uncut nodes conserves flux exactly). */
+ *         the difference equation of uncut nodes conserves flux exactly). Between two
+ *         parts with a single free node between them the contour runs through that node
+ *         and the order drops to 1. */
 enum status flux_measure(const struct grid *grid, const double *phi, double *part,
                          double side[SIDE_COUNT], double *imbalance) MUST_CHECK;
 

@@ -62,7 +62,7 @@ static enum status narrow(const struct part *part, double a, double b, double to
 bool fringe_gap(const struct plane *plane, double a, double b, double *gap)
 {
     const double tolerance = 1e-11 * (plane->high.b - plane->low.b);
-    double below = -INFINITY, above = INFINITY;
+    double below = -(double)INFINITY, above = (double)INFINITY;
     *gap = 0.0;
     for (size_t p = 0; p < plane->part_count; p++)
         if (narrow(&plane->parts[p], a, b, tolerance, &below, &above) != STATUS_OK)

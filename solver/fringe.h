@@ -8,8 +8,8 @@
 #include "solver/path.h"
 
 struct fringe {
-    double length;        /* m, effective length: integral F dz over the path */
-    double entrance;      /* m, z of the effective edges of an equal hard-edge field */
+    double length;   /* m, effective length: integral F dz over the path */
+    double entrance; /* m, z of the effective edges of an equal hard-edge field */
     double exit;
     double leftover_from; /* |F| at the two ends of the path */
     double leftover_to;

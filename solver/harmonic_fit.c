@@ -64,8 +64,8 @@ enum status harmonic_fit(const struct fit_point *points, int count, struct vec2 
     double *matrix = work, *right = work + count * HARMONIC_TERMS;
     double norms[HARMONIC_TERMS];
     lapack_int pivots[HARMONIC_TERMS] = {0}, rank = 0;
-    *fit = (struct harmonic){centre, reach_of(points, count, centre),
-                             degree_for(count), {0.0}};
+    *fit = (struct harmonic){
+        centre, reach_of(points, count, centre), degree_for(count), {0.0}};
     const int terms = 2 * fit->degree + 1;
     fill(points, count, fit, matrix, right);
     scale_columns(matrix, count, terms, norms);

@@ -140,7 +140,8 @@ static enum status fill_from(const struct view *views, int count, enum plane_kin
 /* The plane to take a field from: along where present, else across. */
 static bool choose(const struct view *view, bool magnetic, enum plane_kind *kind)
 {
-    const enum plane_kind along = magnetic ? PLANE_MAGNETIC_ALONG : PLANE_ELECTRIC_ALONG;
+    const enum plane_kind along =
+        magnetic ? PLANE_MAGNETIC_ALONG : PLANE_ELECTRIC_ALONG;
     const enum plane_kind across =
         magnetic ? PLANE_MAGNETIC_ACROSS : PLANE_ELECTRIC_ACROSS;
     *kind = view->planes[along] != NULL ? along : across;
@@ -154,8 +155,8 @@ static enum status lattice_open(const struct lattice *from, struct lattice_field
         to->origin[k] = from->axes[k].from;
         to->step[k] = from->axes[k].step;
     }
-    to->solid = MEM_NEW((size_t)to->n[0] * (size_t)to->n[1] * (size_t)to->n[2],
-                        unsigned char);
+    to->solid =
+        MEM_NEW((size_t)to->n[0] * (size_t)to->n[1] * (size_t)to->n[2], unsigned char);
     return to->solid != NULL ? STATUS_OK : STATUS_MEMORY;
 }
 

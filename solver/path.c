@@ -19,8 +19,8 @@ bool path_range(const struct geometry *geometry, double *from, double *to)
         *to = geometry->beam.path_to;
         return true;
     }
-    *from = -INFINITY;
-    *to = INFINITY;
+    *from = -(double)INFINITY;
+    *to = (double)INFINITY;
     for (int k = 0; k < PLANE_KINDS; k++) {
         const struct plane *plane = &geometry->planes[k];
         if (!plane->present || !plane_kind_is_along((enum plane_kind)k))
@@ -81,14 +81,14 @@ enum status path_sample(const struct view *view, struct path *path)
     if (electric != NULL) {
         status = sample_plane(electric, g->beam.half_x, path, path->e_x);
         if (status == STATUS_OK)
-            status = centre_field(electric, g->reference_z, g->reference_x,
-                                  &path->e_centre);
+            status =
+                centre_field(electric, g->reference_z, g->reference_x, &path->e_centre);
     }
     if (magnetic != NULL && status == STATUS_OK) {
         status = sample_plane(magnetic, g->beam.half_y, path, path->b_y);
         if (status == STATUS_OK)
-            status = centre_field(magnetic, g->reference_z, g->reference_y,
-                                  &path->b_centre);
+            status =
+                centre_field(magnetic, g->reference_z, g->reference_y, &path->b_centre);
     }
     return status;
 }
@@ -96,11 +96,15 @@ enum status path_sample(const struct view *view, struct path *path)
 double path_integral(const struct path *path, const double *f, int i, int j)
 {
     double sum = 0.0;
-    int k = i;
-    for (; k + 2 <= j; k += 2)
+    const bool odd = (j - i) % 2 != 0;
+    if (odd && j - i < 3)
+        return 0.5 * path->step * (f[i] + f[j]);
+    if (odd) {
+        sum = 0.375 * path->step * (f[i] + 3.0 * (f[i + 1] + f[i + 2]) + f[i + 3]);
+        i += 3;
+    }
+    for (int k = i; k + 2 <= j; k += 2)
         sum += path->step / 3.0 * (f[k] + 4.0 * f[k + 1] + f[k + 2]);
-    if (k < j)
-        sum += 0.5 * path->step * (f[k] + f[j]);
     return sum;
 }
 

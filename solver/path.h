@@ -16,14 +16,14 @@ enum {
 
 /* Caller-owned; zeroed is empty. */
 struct path {
-    bool present;             /* a range was there and an along plane covers it */
-    double z[PATH_POINTS];    /* m */
-    double step;              /* m */
-    int lines;                /* PATH_LINES with a footprint, else 1 */
-    double *e_x[PATH_LINES];  /* [PATH_POINTS] V/m on line k; all NULL without plane */
-    double *b_y[PATH_LINES];  /* [PATH_POINTS] T */
-    double e_centre;          /* V/m at the reference point; 0 without plane */
-    double b_centre;          /* T */
+    bool present;            /* a range was there and an along plane covers it */
+    double z[PATH_POINTS];   /* m */
+    double step;             /* m */
+    int lines;               /* PATH_LINES with a footprint, else 1 */
+    double *e_x[PATH_LINES]; /* [PATH_POINTS] V/m on line k; all NULL without plane */
+    double *b_y[PATH_LINES]; /* [PATH_POINTS] T */
+    double e_centre;         /* V/m at the reference point; 0 without plane */
+    double b_centre;         /* T */
 };
 
 /** Range of the path: the file's, or the common z range of the along planes. False if
@@ -37,7 +37,8 @@ double path_line_offset(int k);
 enum status path_sample(const struct view *view, struct path *path) MUST_CHECK;
 
 /** Integral over the samples from index i to j (i <= j) of f dz by Simpson's rule, the
- *  last interval by the trapezoid rule if j - i is odd. Order 4. */
+ *  first three intervals by the 3/8 rule if j - i is odd. Order 4 (a single interval: the
+ *  trapezoid rule, order 2). */
 double path_integral(const struct path *path, const double *f, int i, int j);
 
 /** Empties; safe on zeroed and twice. */

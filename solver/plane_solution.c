@@ -111,9 +111,8 @@ static enum status solve_self(struct plane_solution *s, const struct system *sys
     double *phi = MEM_NEW(nodes, double), *flux = MEM_NEW(parts, double);
     double side[SIDE_COUNT], imbalance;
     s->self_flux = MEM_NEW(parts, double);
-    enum status status = phi != NULL && flux != NULL && s->self_flux != NULL
-                             ? STATUS_OK
-                             : STATUS_MEMORY;
+    enum status status =
+        phi != NULL && flux != NULL && s->self_flux != NULL ? STATUS_OK : STATUS_MEMORY;
     for (int k = 0; k < SIDE_COUNT; k++)
         drive->side_from[k] = drive->side_to[k] = 0.0;
     for (size_t p = 0; p < parts && status == STATUS_OK; p++) {
@@ -152,10 +151,11 @@ static void blame(const struct plane_solution *s, struct messages *messages)
     struct blame space;
     if (blame_space(&s->grid, &space) != STATUS_OK)
         return;
-    messages_add(messages, SEVERITY_NOTE, s->plane->place,
-                 "the free space round (%.6g, %.6g) mm, %d nodes, is the one that fixed "
-                 "potentials hold least (share of its legs that end on them: %.2g)",
-                 space.at.a * 1e3, space.at.b * 1e3, space.nodes, space.hold);
+    messages_add(
+        messages, SEVERITY_NOTE, s->plane->place,
+        "the free space round (%.6g, %.6g) mm, %d nodes, is the one that fixed "
+        "potentials hold least (share of its legs that end on them: %.2g)",
+        space.at.a * 1e3, space.at.b * 1e3, space.nodes, space.hold);
 }
 
 static enum status judge(const struct plane_solution *s, struct messages *messages)
@@ -196,9 +196,8 @@ enum status plane_solve(const struct geometry *geometry, enum plane_kind kind,
     memset(solution, 0, sizeof *solution);
     solution->geometry = geometry;
     solution->plane = &geometry->planes[kind];
-    enum status status =
-        grid_build(solution->plane, fineness, level, geometry->memory_budget,
-                   &solution->grid, messages);
+    enum status status = grid_build(solution->plane, fineness, level,
+                                    geometry->memory_budget, &solution->grid, messages);
     if (status != STATUS_OK)
         return status;
     status = allocate(solution);

@@ -20,14 +20,14 @@ struct plane_solution {
     const struct plane *plane;
     struct grid grid;
     struct quality quality;
-    double **unit;        /* [supply_count + 1][nb*na] potential for 1 V (1 A) of every
+    double **unit;      /* [supply_count + 1][nb*na] potential for 1 V (1 A) of every
                              supply, the last for the constant parts; NULL if nothing
                              in the plane depends on it */
-    double *phi;          /* [nb*na] at the settings */
-    double *part_value;   /* [part_count] potential of every part at the settings */
-    double *part_flux;    /* [part_count] outward flux of -grad phi at the settings */
+    double *phi;        /* [nb*na] at the settings */
+    double *part_value; /* [part_count] potential of every part at the settings */
+    double *part_flux;  /* [part_count] outward flux of -grad phi at the settings */
     double side_flux[SIDE_COUNT];
-    double *self_flux;    /* [part_count] flux out of a part at 1 with all else at 0;
+    double *self_flux; /* [part_count] flux out of a part at 1 with all else at 0;
                              electric planes only, else NULL */
     struct field *field;
 };

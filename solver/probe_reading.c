@@ -42,7 +42,8 @@ static enum status read_one(const struct view *views, int count,
     const struct estimate p = extrapolate(potential, count, 0.0);
     reading->potential = p.value;
     reading->potential_err = p.uncertainty;
-    const struct estimate e[2] = {extrapolate(a, count, 0.0), extrapolate(b, count, 0.0)};
+    const struct estimate e[2] = {extrapolate(a, count, 0.0),
+                                  extrapolate(b, count, 0.0)};
     for (int k = 0; k < 2; k++) {
         reading->field[k] = e[k].value;
         reading->field_err[k] = e[k].uncertainty;

@@ -93,8 +93,8 @@ static void fill_ratio(struct profile *p, const struct path *path)
         if (!p->defined[k])
             continue;
         p->ratio_error[k] = ratio_error(path, 0, 0, k);
-        p->ratio_error_err[k] = p->e_x_err[k] / fabs(p->e_x[k]) +
-                                p->b_y_err[k] / fabs(p->b_y[k]);
+        p->ratio_error_err[k] =
+            p->e_x_err[k] / fabs(p->e_x[k]) + p->b_y_err[k] / fabs(p->b_y[k]);
         bundle_at(path, k, &p->bundle_low[k], &p->bundle_high[k]);
     }
 }
@@ -142,11 +142,16 @@ enum status profile_combine(const struct path *paths, int count,
 
 void profile_free(struct profile *profile)
 {
-    double *arrays[] = {profile->z,           profile->e_x,
-                        profile->e_x_err,     profile->b_y,
-                        profile->b_y_err,     profile->ratio_error,
-                        profile->ratio_error_err, profile->bundle_low,
-                        profile->bundle_high, profile->imbalance};
+    double *arrays[] = {profile->z,
+                        profile->e_x,
+                        profile->e_x_err,
+                        profile->b_y,
+                        profile->b_y_err,
+                        profile->ratio_error,
+                        profile->ratio_error_err,
+                        profile->bundle_low,
+                        profile->bundle_high,
+                        profile->imbalance};
     for (size_t k = 0; k < sizeof arrays / sizeof *arrays; k++)
         mem_free(arrays[k]);
     mem_free(profile->defined);

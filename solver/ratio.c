@@ -63,8 +63,8 @@ static void summarise_bundle(const struct path *path, struct ratio_summary *s)
 static void summarise_imbalance(const struct path *path, struct ratio_summary *s)
 {
     for (int k = 0; k < PATH_POINTS; k++) {
-        const double imbalance = fabs(path->e_x[0][k] / path->e_centre -
-                                      path->b_y[0][k] / path->b_centre);
+        const double imbalance =
+            fabs(path->e_x[0][k] / path->e_centre - path->b_y[0][k] / path->b_centre);
         if (imbalance > s->imbalance) {
             s->imbalance = imbalance;
             s->imbalance_z = path->z[k];
@@ -84,7 +84,8 @@ static double excess(const struct path *path, int k, double bound)
 static double flat_end(const struct path *path, int k, int step, double bound)
 {
     while (k + step >= 0 && k + step < PATH_POINTS) {
-        const double here = excess(path, k, bound), next = excess(path, k + step, bound);
+        const double here = excess(path, k, bound),
+                     next = excess(path, k + step, bound);
         if (next > 0.0) {
             const double t = here < next ? -here / (next - here) : 0.0;
             return path->z[k] + step * path->step * fmin(fmax(t, 0.0), 1.0);

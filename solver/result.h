@@ -46,17 +46,17 @@ struct plane_result {
 struct profile {
     bool present;
     size_t count;
-    double *z;                 /* [count] m */
-    double *e_x, *e_x_err;     /* [count] V/m and uncertainty */
-    double *b_y, *b_y_err;     /* [count] T and uncertainty */
-    double reference_speed;    /* m/s, u_ref at the reference point; 0 without both */
-    double *ratio_error;       /* [count] u/u_ref - 1 on the axis; 0 where !defined */
-    double *ratio_error_err;   /* [count] */
-    double *bundle_low;        /* [count] lowest ratio error over the footprint */
-    double *bundle_high;       /* [count] highest */
-    bool *defined;             /* [count] both fields at least FIELD_FLOOR of centre */
-    double *imbalance;         /* [count] (E_x - u_ref B_y) / E_x(reference) */
-    bool has_bundle;           /* a footprint was given */
+    double *z;               /* [count] m */
+    double *e_x, *e_x_err;   /* [count] V/m and uncertainty */
+    double *b_y, *b_y_err;   /* [count] T and uncertainty */
+    double reference_speed;  /* m/s, u_ref at the reference point; 0 without both */
+    double *ratio_error;     /* [count] u/u_ref - 1 on the axis; 0 where !defined */
+    double *ratio_error_err; /* [count] */
+    double *bundle_low;      /* [count] lowest ratio error over the footprint */
+    double *bundle_high;     /* [count] highest */
+    bool *defined;           /* [count] both fields at least FIELD_FLOOR of centre */
+    double *imbalance;       /* [count] (E_x - u_ref B_y) / E_x(reference) */
+    bool has_bundle;         /* a footprint was given */
 };
 
 /* Map of the ratio error over the footprint in the cross-section, node (i, j) at
@@ -64,21 +64,21 @@ struct profile {
 struct section {
     bool present;
     size_t nx, ny;
-    double *x, *y;        /* [nx], [ny] m */
-    double *e_x, *e_y;    /* V/m; NULL without electric_across */
-    double *b_x, *b_y;    /* T; NULL without magnetic_across */
-    double *ratio_error;  /* NULL unless both planes are there */
+    double *x, *y;       /* [nx], [ny] m */
+    double *e_x, *e_y;   /* V/m; NULL without electric_across */
+    double *b_x, *b_y;   /* T; NULL without magnetic_across */
+    double *ratio_error; /* NULL unless both planes are there */
 };
 
 struct probe_reading {
     size_t probe; /* index in geometry->probes */
     enum plane_kind plane;
-    struct vec2 at;      /* m, in the plane's (a, b) */
-    double potential;    /* V or A */
-    double field[2];     /* V/m or T, along a and b */
+    struct vec2 at;   /* m, in the plane's (a, b) */
+    double potential; /* V or A */
+    double field[2];  /* V/m or T, along a and b */
     double potential_err;
     double field_err[2];
-    int part;            /* part the probe lies in, or -1 */
+    int part; /* part the probe lies in, or -1 */
 };
 
 /* E and B on the lattice for trajectory programs. Along planes are used where present
@@ -86,26 +86,26 @@ struct probe_reading {
  * Arrays [nz*ny*nx], x fastest, then y, then z. */
 struct lattice_field {
     bool present;
-    int n[3];                /* points along x, y, z (by enum axis) */
-    double origin[3];        /* m */
-    double step[3];          /* m */
+    int n[3];         /* points along x, y, z (by enum axis) */
+    double origin[3]; /* m */
+    double step[3];   /* m */
     bool has_electric, has_magnetic;
     enum plane_kind electric_from, magnetic_from;
-    double *e[3];            /* V/m, by axis; NULL without an electric plane */
-    double *b[3];            /* T */
-    unsigned char *solid;    /* 1 where the point lies inside a part of either plane
+    double *e[3];         /* V/m, by axis; NULL without an electric plane */
+    double *b[3];         /* T */
+    unsigned char *solid; /* 1 where the point lies inside a part of either plane
                                 (fields are 0 there) */
 };
 
 struct verdict_item {
     enum limit_kind limit;
-    double allowed;         /* SI */
+    double allowed;              /* SI */
     const struct figure *figure; /* the figure judged; NULL if it is missing */
-    double value;           /* SI, magnitude judged */
+    double value;                /* SI, magnitude judged */
     double uncertainty;
-    bool judged;            /* a figure was there and could be judged */
-    bool met;               /* holds with the uncertainty on the bad side */
-    char *reason;           /* one sentence, never NULL */
+    bool judged;  /* a figure was there and could be judged */
+    bool met;     /* holds with the uncertainty on the bad side */
+    char *reason; /* one sentence, never NULL */
 };
 
 struct verdict {

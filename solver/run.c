@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later */
 #include "solver/run.h"
 
+#include <stdio.h>
 #include <string.h>
 
 #include "shared/mem.h"
@@ -9,13 +10,13 @@
 #include "solver/figure_maker.h"
 #include "solver/lattice_field.h"
 #include "solver/path.h"
-#include "solver/plane_families.h"
+#include "solver/plane_solution.h"
 #include "solver/probe_reading.h"
 #include "solver/profile.h"
 #include "solver/verdict.h"
 #include "solver/view.h"
 
-enum { LEVELS_DEFAULT = 3 };
+enum { LEVELS_DEFAULT = 3, STAGE_SIZE = 80 };
 
 static const struct place NOWHERE = {0, 0};
 
@@ -41,24 +42,37 @@ static void tell(const struct run *run, const char *stage, double fraction)
 /* Solving is this share of the whole as far as progress is concerned. */
 #define SOLVE_SHARE 0.8
 
-static void tell_solve(void *context, const char *stage, double fraction)
+static enum status solve_plane(struct run *run, enum plane_kind kind, double from,
+                               double share)
 {
-    tell(context, stage, SOLVE_SHARE * fraction);
+    enum status status = STATUS_OK;
+    for (int l = 0; l < run->levels && status == STATUS_OK; l++) {
+        char stage[STAGE_SIZE];
+        (void)snprintf(stage, sizeof stage, "%s, grid %d of %d", plane_kind_key(kind),
+                       l + 1, run->levels);
+        /* Work grows about fourfold from level to level. */
+        tell(run, stage, from + share * (l == 0 ? 0.0 : l == 1 ? 0.05 : 0.2));
+        status = plane_solve(run->geometry, kind, run->fineness, l,
+                             &run->solutions[l][kind], run->messages);
+        run->views[l].planes[kind] = &run->solutions[l][kind];
+    }
+    return status;
 }
 
+/* One plane after the other: UMFPACK leans on the BLAS, and serial builds of OpenBLAS
+ * must not be used by two threads (2 of 10 runs came out untrusted). */
 static enum status solve_planes(struct run *run)
 {
-    const struct family_order order = {.geometry = run->geometry,
-                                       .fineness = run->fineness,
-                                       .levels = run->levels,
-                                       .threads = run->options->threads,
-                                       .progress = tell_solve,
-                                       .context = run};
-    enum status status = plane_families_solve(&order, run->solutions, run->messages);
-    for (int l = 0; l < run->levels; l++)
-        for (int k = 0; k < PLANE_KINDS; k++)
-            if (run->geometry->planes[k].present)
-                run->views[l].planes[k] = &run->solutions[l][k];
+    int count = 0, done = 0;
+    enum status status = STATUS_OK;
+    for (int k = 0; k < PLANE_KINDS; k++)
+        count += run->geometry->planes[k].present;
+    for (int k = 0; k < PLANE_KINDS && status == STATUS_OK; k++) {
+        if (!run->geometry->planes[k].present)
+            continue;
+        const double share = SOLVE_SHARE / count;
+        status = solve_plane(run, (enum plane_kind)k, share * done++, share);
+    }
     return status;
 }
 
@@ -158,8 +172,8 @@ static enum status measure(struct run *run, struct result *result)
     if (status == STATUS_OK)
         status = combine_sections(run, &result->section);
     if (status == STATUS_OK)
-        status = probes_read(run->views, run->levels, &result->probes,
-                             &result->probe_count);
+        status =
+            probes_read(run->views, run->levels, &result->probes, &result->probe_count);
     if (status == STATUS_OK)
         status = lattice_fill(run->views, run->levels, &result->lattice);
     if (status == STATUS_OK)
@@ -200,9 +214,8 @@ enum status run_geometry(const struct geometry *geometry,
     run->fineness = options->fineness > 0.0 ? options->fineness : geometry->fineness;
     for (int l = 0; l < RESULT_LEVELS_MAX; l++)
         run->views[l].geometry = geometry;
-    enum status status = run->levels >= 2 && run->levels <= RESULT_LEVELS_MAX
-                             ? STATUS_OK
-                             : STATUS_SIZE;
+    enum status status =
+        run->levels >= 2 && run->levels <= RESULT_LEVELS_MAX ? STATUS_OK : STATUS_SIZE;
     if (status == STATUS_OK)
         status = solve_planes(run);
     if (status == STATUS_OK)

@@ -8,11 +8,9 @@
 
 struct run_options {
     double fineness; /* 0: take the geometry's */
-    int levels;      /* grids in a family, 1 to RESULT_LEVELS_MAX; 0: the default, 3 */
-    int threads;     /* planes solved at the same time; 0: one per processor. The result
-                        is the same to the last bit whatever the number */
-    /* Called before each stage with a short text and the done fraction 0..1, by one
-     * thread at a time; NULL for silence. */
+    int levels;      /* grids in a family, 2 or 3; 0: the default, 3 */
+    /* Called before each stage with a short text and the done fraction 0..1; NULL for
+     * silence. */
     void (*progress)(void *context, const char *stage, double fraction);
     void *context;
 };

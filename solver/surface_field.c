@@ -31,8 +31,8 @@ static double spacing_of(const struct part *part)
 /* Points inside another part or on the border of the region see no free space. */
 static bool point_is_free(const struct plane *plane, size_t part, struct vec2 at)
 {
-    const double slack = 1e-9 * fmin(plane->high.a - plane->low.a,
-                                     plane->high.b - plane->low.b);
+    const double slack =
+        1e-9 * fmin(plane->high.a - plane->low.a, plane->high.b - plane->low.b);
     if (at.a <= plane->low.a + slack || at.a >= plane->high.a - slack ||
         at.b <= plane->low.b + slack || at.b >= plane->high.b - slack)
         return false;
@@ -49,8 +49,8 @@ static enum status look_at(const struct plane_solution *plane,
     enum status status = field_at_surface(plane->field, point->at, &value);
     if (status == STATUS_SIZE) /* a crevice that no free node sees */
         return STATUS_OK;
-    const double field = fabs(plane_field_factor(plane->plane->kind)) *
-                         vec2_length(value.gradient);
+    const double field =
+        fabs(plane_field_factor(plane->plane->kind)) * vec2_length(value.gradient);
     if (status == STATUS_OK && (!peak->found || field > peak->field)) {
         peak->found = true;
         peak->field = field;

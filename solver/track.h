@@ -17,9 +17,9 @@ struct particle {
 };
 
 struct exit_state {
-    double x;     /* m, sideways place at the end of the path */
-    double slope; /* dx/dz there */
-    bool lost;    /* it hit a part, left the region or turned back before the end */
+    double x;       /* m, sideways place at the end of the path */
+    double slope;   /* dx/dz there */
+    bool lost;      /* it hit a part, left the region or turned back before the end */
     double lost_at; /* m, z where that happened */
 };
 

@@ -30,7 +30,7 @@ static const char *figure_name(enum limit_kind kind)
 static double badness(const struct figure *figure, bool at_least)
 {
     if (figure->state != FIGURE_GOOD || !isfinite(figure->value))
-        return INFINITY;
+        return (double)INFINITY;
     const double size = fabs(figure->value);
     return at_least ? -(size - figure->uncertainty) : size + figure->uncertainty;
 }
@@ -54,8 +54,8 @@ static void judge_good(struct verdict_item *item, const struct limit_rule *rule,
     const double margin = rule->at_least
                               ? item->value - item->uncertainty - item->allowed
                               : item->allowed - item->value - item->uncertainty;
-    const bool central = rule->at_least ? item->value >= item->allowed
-                                        : item->value <= item->allowed;
+    const bool central =
+        rule->at_least ? item->value >= item->allowed : item->value <= item->allowed;
     item->judged = true;
     item->met = margin >= 0.0;
     (void)snprintf(reason, REASON_SIZE, "%s",

@@ -5,19 +5,19 @@
 
 #include "shared/mem.h"
 
-const struct model_reference model_square = {
-    {0.0, 40e-3, 55e-3, 60e-3, 65e-3, 75e-3},
-    {49.9999997827e3, 49.9688828191e3, 46.9465347357e3, 39.6826984003e3, 27.8706574731e3,
-     10.8964685982e3},
-    6868.00517925,
-    9555.26162592};
+const struct model_reference model_square = {{0.0, 40e-3, 55e-3, 60e-3, 65e-3, 75e-3},
+                                             {49.9999997827e3, 49.9688828191e3,
+                                              46.9465347357e3, 39.6826984003e3,
+                                              27.8706574731e3, 10.8964685982e3},
+                                             6868.00517925,
+                                             9555.26162592};
 
-const struct model_reference model_rounded = {
-    {0.0, 40e-3, 55e-3, 60e-3, 65e-3, 75e-3},
-    {49.9999997615e3, 49.9658573173e3, 46.6986668524e3, 39.1455423941e3, 27.3467218744e3,
-     10.6989416485e3},
-    6845.50367817,
-    9524.61541779};
+const struct model_reference model_rounded = {{0.0, 40e-3, 55e-3, 60e-3, 65e-3, 75e-3},
+                                              {49.9999997615e3, 49.9658573173e3,
+                                               46.6986668524e3, 39.1455423941e3,
+                                               27.3467218744e3, 10.6989416485e3},
+                                              6845.50367817,
+                                              9524.61541779};
 
 static enum status plate(struct part *part, const char *name, double low, double high,
                          double rounding, double potential)
@@ -48,6 +48,7 @@ enum status model_plates(double rounding, struct geometry *geometry)
     enum status status =
         plate(&plane->parts[0], "upper plate", 10e-3, 14e-3, rounding, 500.0);
     if (status == STATUS_OK)
-        status = plate(&plane->parts[1], "lower plate", -14e-3, -10e-3, rounding, -500.0);
+        status =
+            plate(&plane->parts[1], "lower plate", -14e-3, -10e-3, rounding, -500.0);
     return status;
 }

@@ -30,6 +30,13 @@ static void build(const struct geometry *g, int level, struct grid *grid)
                      STATUS_OK);
 }
 
+/* Owner of node (i, j). */
+static int owner_at(const struct grid *grid, int i, int j)
+{
+    const int node = j * grid->na + i;
+    return grid->owner[node];
+}
+
 static struct vec2 place_of(const struct grid *grid, int node)
 {
     return (struct vec2){grid->a[node % grid->na], grid->b[node / grid->na]};
@@ -103,14 +110,12 @@ static void test_sides_own_their_nodes_and_mirrors_stay_free(void **state)
     plane->sides[SIDE_B_HIGH].kind = SIDE_ANTIMIRROR;
     build(&g, 0, &grid);
     for (int j = 1; j + 1 < grid.nb; j++) {
-        assert_int_equal(grid.owner[j * grid.na], OWNER_FREE);
-        assert_int_equal(grid.owner[j * grid.na + grid.na - 1],
-                         OWNER_SIDE - SIDE_A_HIGH);
+        assert_int_equal(owner_at(&grid, 0, j), OWNER_FREE);
+        assert_int_equal(owner_at(&grid, grid.na - 1, j), OWNER_SIDE - SIDE_A_HIGH);
     }
     for (int i = 0; i + 1 < grid.na; i++) {
-        assert_int_equal(grid.owner[i], OWNER_SIDE - SIDE_B_LOW);
-        assert_int_equal(grid.owner[(grid.nb - 1) * grid.na + i],
-                         OWNER_SIDE - SIDE_B_HIGH);
+        assert_int_equal(owner_at(&grid, i, 0), OWNER_SIDE - SIDE_B_LOW);
+        assert_int_equal(owner_at(&grid, i, grid.nb - 1), OWNER_SIDE - SIDE_B_HIGH);
     }
     assert_int_equal(grid.free_count, (grid.na - 1) * (grid.nb - 2));
     grid_free(&grid);
@@ -183,7 +188,8 @@ static void test_no_cut_is_missing_at_a_disc(void **state)
                 continue;
             for (int k = 1; k < 64; k++) {
                 const struct vec2 p = place_of(&grid, n), q = place_of(&grid, next);
-                const struct vec2 at = vec2_add(p, vec2_scale(vec2_sub(q, p), k / 64.0));
+                const struct vec2 at =
+                    vec2_add(p, vec2_scale(vec2_sub(q, p), k / 64.0));
                 assert_at_most(depth(at), 1e-11);
             }
         }
@@ -261,8 +267,7 @@ static void test_part_reaching_through_a_side_owns_the_side(void **state)
     int owned = 0;
     for (int j = 0; j < grid.nb; j++) {
         const bool inside = grid.b[j] >= 3e-3 && grid.b[j] <= 5e-3;
-        assert_int_equal(grid.owner[j * grid.na],
-                         inside ? 0 : OWNER_SIDE - SIDE_A_LOW);
+        assert_int_equal(owner_at(&grid, 0, j), inside ? 0 : OWNER_SIDE - SIDE_A_LOW);
         owned += inside;
     }
     assert_true(owned >= 3);
@@ -293,13 +298,12 @@ static void test_levels_nest_bit_for_bit(void **state)
         assert_int_equal(fine.na, 2 * coarse.na - 1);
         assert_int_equal(fine.nb, 2 * coarse.nb - 1);
         for (int i = 0; i < coarse.na; i++)
-            assert_true(coarse.a[i] == fine.a[2 * i]);
+            assert_true(coarse.a[i] == fine.a[(size_t)2 * (size_t)i]);
         for (int j = 0; j < coarse.nb; j++)
-            assert_true(coarse.b[j] == fine.b[2 * j]);
+            assert_true(coarse.b[j] == fine.b[(size_t)2 * (size_t)j]);
         for (int n = 0; n < coarse.na * coarse.nb; n++)
-            assert_int_equal(
-                coarse.owner[n],
-                fine.owner[2 * (n / coarse.na) * fine.na + 2 * (n % coarse.na)]);
+            assert_int_equal(coarse.owner[n],
+                             owner_at(&fine, 2 * (n % coarse.na), 2 * (n / coarse.na)));
         grid_free(&coarse);
         grid_free(&fine);
     }

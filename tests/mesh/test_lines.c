@@ -101,8 +101,9 @@ static void test_bad_input_is_refused(void **state)
     int n;
     assert_int_equal(lines_build(1.0, 1.0, NULL, 0, SPACING, 0.0, 0, &lines, &n),
                      STATUS_SIZE);
-    assert_int_equal(lines_build(0.0, (double)NAN, NULL, 0, SPACING, 0.0, 0, &lines, &n),
-                     STATUS_SIZE);
+    assert_int_equal(
+        lines_build(0.0, (double)NAN, NULL, 0, SPACING, 0.0, 0, &lines, &n),
+        STATUS_SIZE);
     const struct line_spacing absurd = {1.0, 1e-30, 1.0};
     assert_int_equal(lines_build(0.0, 1.0, KEYS, 3, absurd, 0.0, 0, &lines, &n),
                      STATUS_SIZE);

@@ -61,11 +61,10 @@ static double surface_error(const struct plane_solution *s)
     for (int k = 0; k < POINTS; k++) {
         const double angle = 2.0 * PI * k / POINTS;
         struct field_value v;
-        assert_int_equal(field_at_surface(s->field,
-                                          (struct vec2){INNER * cos(angle),
-                                                        INNER * sin(angle)},
-                                          &v),
-                         STATUS_OK);
+        assert_int_equal(
+            field_at_surface(s->field,
+                             (struct vec2){INNER * cos(angle), INNER * sin(angle)}, &v),
+            STATUS_OK);
         const double error = vec2_length(v.gradient) / exact - 1.0;
         squares += error * error;
     }
@@ -78,8 +77,7 @@ static void assert_order(const double *error, int count, double order, double wi
     for (int k = 0; k < count; k++)
         print_message("  level %d error %.3e%s\n", k, error[k],
                       k > 0 ? "" : " (coarsest)");
-    const double measured =
-        log2(error[0] / error[count - 1]) / (double)(count - 1);
+    const double measured = log2(error[0] / error[count - 1]) / (double)(count - 1);
     print_message("  measured order %.3f\n", measured);
     assert_close(measured, order, 0.0, within);
     assert_at_most(error[count - 1], finest);
@@ -142,7 +140,8 @@ static void test_eccentric_charge_matches_closed_form(void **state)
     struct plane_solution s;
     const double shift = 2.9e-3, d = shift * hypot(1.0, 0.37);
     const double exact =
-        2.0 * PI / acosh((INNER * INNER + OUTER * OUTER - d * d) / (2.0 * INNER * OUTER));
+        2.0 * PI /
+        acosh((INNER * INNER + OUTER * OUTER - d * d) / (2.0 * INNER * OUTER));
     coaxial(&g, shift);
     solve(&g, 1.0, 3, &s);
     assert_close(s.part_flux[1], exact, 3e-5, 0.0);

@@ -262,7 +262,8 @@ static void test_linear_guards_make_the_field_uniform(void **state)
     solve(&g, PLANE_ELECTRIC_ACROSS, 1, &s);
     for (int k = 0; k < 50; k++) {
         double f[2];
-        const struct vec2 at = {0.49 * d * sin(2.385 * k), 0.49 * height * sin(1.7 * k)};
+        const struct vec2 at = {0.49 * d * sin(2.385 * k),
+                                0.49 * height * sin(1.7 * k)};
         assert_int_equal(plane_field(&s, at, f, NULL), STATUS_OK);
         assert_close(-f[0] / (640.0 / d), 1.0, 0.0, 1e-11);
         assert_close(f[1] / (640.0 / d), 0.0, 0.0, 1e-11);

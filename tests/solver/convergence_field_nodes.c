@@ -131,9 +131,7 @@ static void test_gradient_on_a_flat_face_is_that_of_the_gap(void **state)
     field_at_nodes(&s.grid, s.phi, s.part_value, ga, gb);
     for (int n = 0; n < nodes; n++) {
         const double b = s.grid.b[n / s.grid.na];
-        const double want = b <= gap    ? 385.7 / gap
-                            : b < 17e-3 ? 0.0
-                                        : -385.7 / 4e-3;
+        const double want = b <= gap ? 385.7 / gap : b < 17e-3 ? 0.0 : -385.7 / 4e-3;
         assert_close(ga[n], 0.0, 0.0, 1e-9 * 385.7 / gap);
         assert_close(gb[n], want, 1e-10, 0.0);
     }

@@ -22,7 +22,7 @@ static void read_filter(const char *mass, const char *charge, const char *energy
     const int n = snprintf(
         text, sizeof text,
         "evengap: 1\n"
-        "beam: {mass: %s, charge: %s, energy: %s}\n"
+        "beam: {mass: %s, charge: %s, energy: %s, slit: {at: 300 mm, width: 0.5 mm}}\n"
         "supplies: {plates: %s, coil: %s}\n"
         "planes:\n"
         "  electric_along:\n"
@@ -120,6 +120,32 @@ static void test_beam_in_tune_goes_straight(void **state)
     geometry_free(&g);
 }
 
+/* First-order optics of the ideal filter (Seliger 1972; Wollnik 1987; from memory): a
+ * change of speed moves the particle by (dv/v) [R (1 - cos theta) + D sin theta] towards
+ * the magnetic side; a change of mass at the same energy by half of that. */
+static void test_dispersions_follow_first_order_optics(void **state)
+{
+    (void)state;
+    struct geometry g;
+    struct result r;
+    read_filter("40.0 u", "1 e", "5 keV", "300 V", "3454.24 A", &g);
+    run(&g, &r);
+    const double b = VACUUM_PERMEABILITY * 3454.24 / 40e-3;
+    const double radius = 40.0 * ATOMIC_MASS * g.beam.speed / (ELEMENTARY_CHARGE * b);
+    const double theta = 80e-3 / radius, drift = 300e-3 - 40e-3;
+    const double at_slit = radius * (1.0 - cos(theta)) + drift * sin(theta);
+    assert_close(figure_value(&r, "cyclotron_radius"), radius, 1e-6, 0.0);
+    assert_close(figure_value(&r, "cyclotron_phase"), theta, 1e-6, 0.0);
+    assert_close(figure_value(&r, "speed_dispersion"), -radius * (1.0 - cos(theta)),
+                 1e-5, 0.0);
+    assert_close(figure_value(&r, "speed_dispersion_slit"), -at_slit, 1e-5, 0.0);
+    assert_close(figure_value(&r, "speed_resolution"), at_slit / 0.5e-3, 1e-5, 0.0);
+    assert_close(figure_value(&r, "mass_resolution"), 0.5 * at_slit / 0.5e-3, 1e-4,
+                 0.0);
+    result_free(&r);
+    geometry_free(&g);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -127,6 +153,7 @@ int main(void)
         cmocka_unit_test(test_speeds_of_fast_electrons),
         cmocka_unit_test(test_flux_density_that_40_u_at_5_kev_needs),
         cmocka_unit_test(test_beam_in_tune_goes_straight),
+        cmocka_unit_test(test_dispersions_follow_first_order_optics),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

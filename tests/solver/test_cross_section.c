@@ -38,8 +38,8 @@ static void begin(struct bench *b)
     scene_wall(m, SIDE_A_HIGH, -1590.0, 1590.0);
     scene_wall(m, SIDE_B_LOW, -1590.0, -1590.0);
     scene_wall(m, SIDE_B_HIGH, 1590.0, 1590.0);
-    assert_int_equal(
-        plane_solve(g, PLANE_ELECTRIC_ACROSS, 1.0, 0, &b->electric, NULL), STATUS_OK);
+    assert_int_equal(plane_solve(g, PLANE_ELECTRIC_ACROSS, 1.0, 0, &b->electric, NULL),
+                     STATUS_OK);
     assert_int_equal(plane_solve(g, PLANE_MAGNETIC_ALONG, 1.0, 0, &b->magnetic, NULL),
                      STATUS_OK);
     b->view = (struct view){g,
@@ -114,10 +114,10 @@ static void test_ratio_error_is_that_of_the_saddle(void **state)
     begin(&b);
     const struct section_source source = section_source_of(&b.view);
     assert_int_equal(section_reference(&source, 0.0, 0.0, &reference), STATUS_OK);
-    assert_close(reference,
-                 311.0 / HALF_X / (VACUUM_PERMEABILITY * 1590.0 / HALF_Y), 1e-10, 0.0);
-    assert_int_equal(
-        section_ratio_error(&source, reference, 4e-3, 5e-3, &error, &open), STATUS_OK);
+    assert_close(reference, 311.0 / HALF_X / (VACUUM_PERMEABILITY * 1590.0 / HALF_Y),
+                 1e-10, 0.0);
+    assert_int_equal(section_ratio_error(&source, reference, 4e-3, 5e-3, &error, &open),
+                     STATUS_OK);
     assert_true(open);
     assert_close(error, SADDLE * 5e-3 / HALF_Y, 0.0, 1e-10);
     end(&b);
@@ -137,7 +137,8 @@ static void test_map_covers_the_footprint(void **state)
     assert_close(map.x[0], -3e-3, 1e-14, 0.0);
     assert_close(map.y[SECTION_POINTS - 1], 2e-3, 1e-14, 0.0);
     for (size_t n = 0; n < map.nx * map.ny; n++)
-        assert_close(map.ratio_error[n], SADDLE * map.y[n / map.nx] / HALF_Y, 0.0, 1e-10);
+        assert_close(map.ratio_error[n], SADDLE * map.y[n / map.nx] / HALF_Y, 0.0,
+                     1e-10);
     section_free(&map);
     section_free(&map);
     end(&b);
@@ -172,12 +173,14 @@ static void test_vanishing_field_has_no_reference(void **state)
     struct geometry g;
     struct plane_solution dead;
     scene_begin(&g, 0.0, true);
-    struct plane *p = scene_plane(&g, PLANE_MAGNETIC_ALONG, -60e-3, 60e-3, -HALF_Y, HALF_Y);
+    struct plane *p =
+        scene_plane(&g, PLANE_MAGNETIC_ALONG, -60e-3, 60e-3, -HALF_Y, HALF_Y);
     scene_wall(p, SIDE_B_HIGH, 1.0, 1.0);
     assert_int_equal(plane_solve(&g, PLANE_MAGNETIC_ALONG, 1.0, 0, &dead, NULL),
                      STATUS_OK);
     const struct section_source source = {&b.electric, &dead, 0.0};
-    assert_int_equal(section_reference(&source, 0.0, 0.0, &reference), STATUS_UNTRUSTED);
+    assert_int_equal(section_reference(&source, 0.0, 0.0, &reference),
+                     STATUS_UNTRUSTED);
     assert_true(reference == 0.0);
     plane_solution_free(&dead);
     geometry_free(&g);

@@ -120,7 +120,8 @@ static void test_small_disorder_is_settled_with_a_wide_uncertainty(void **state)
     const struct estimate judged = extrapolate(v, 3, 1.0);
     assert_true(judged.settled);
     assert_close(judged.uncertainty, 1.2e-5, 1e-6, 0.0);
-    assert_false(extrapolate(v, 3, 0.0).settled); /* against themselves they are large */
+    assert_false(
+        extrapolate(v, 3, 0.0).settled); /* against themselves they are large */
 }
 
 static void test_constant_values_stand(void **state)
@@ -164,7 +165,7 @@ static void test_not_a_number_is_never_settled(void **state)
     (void)state;
     for (int at = 0; at < 3; at++) {
         double v[3] = {LIMIT, LIMIT * (1.0 + 1e-7), LIMIT * (1.0 + 2e-7)};
-        v[at] = NAN;
+        v[at] = (double)NAN;
         assert_false(extrapolate(v, 3, 0.0).settled);
         assert_false(extrapolate(v, 3, 1.0).settled);
         if (at < 2)

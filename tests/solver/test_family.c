@@ -28,16 +28,19 @@ static void add(struct figures *figures, struct figure figure, const char *note)
  * input alone, one that vanishes against its scale. */
 static void family(struct figures levels[LEVELS])
 {
-    static const double swings[LEVELS] = {1.0, 2.0, 1.2}, small[LEVELS] = {1e-7, -2e-7, 3e-7};
+    static const double swings[LEVELS] = {1.0, 2.0, 1.2},
+                        small[LEVELS] = {1e-7, -2e-7, 3e-7};
     memset(levels, 0, LEVELS * sizeof *levels);
     for (int l = 0; l < LEVELS; l++) {
         const double h2 = ldexp(1.0, -2 * l);
         struct figure missing = figure_of("missing", l == 1 ? 0.0 : 3.0);
-        struct figure exact = figure_of("exact", 2.385), tiny = figure_of("tiny", small[l]);
+        struct figure exact = figure_of("exact", 2.385),
+                      tiny = figure_of("tiny", small[l]);
         missing.state = l == 1 ? FIGURE_MISSING : FIGURE_GOOD;
         exact.planes = 0;
         tiny.scale = 1.0;
-        add(&levels[l], figure_of("clean", 7.0 + 0.2 * h2), l == 2 ? "finest" : "coarser");
+        add(&levels[l], figure_of("clean", 7.0 + 0.2 * h2),
+            l == 2 ? "finest" : "coarser");
         add(&levels[l], figure_of("swings", swings[l]), "a note");
         add(&levels[l], missing, NULL);
         add(&levels[l], exact, NULL);

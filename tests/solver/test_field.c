@@ -31,7 +31,8 @@ static struct field_value value_at(const struct plane_solution *s, double a, dou
 
 static struct vec2 scatter(int k)
 {
-    return (struct vec2){12e-3 + 18.5e-3 * sin(2.385 * k), 4e-3 + 12.5e-3 * sin(1.711 * k)};
+    return (struct vec2){12e-3 + 18.5e-3 * sin(2.385 * k),
+                         4e-3 + 12.5e-3 * sin(1.711 * k)};
 }
 
 /* Central differences of the potential with error h^2 plus round-off/h; points whose
@@ -136,8 +137,9 @@ static void test_points_beyond_walls_are_refused(void **state)
     struct plane_solution s;
     struct field_value v;
     rods(&g, &s);
-    const struct vec2 outside[] = {{-7.1e-3, 0.0}, {31.1e-3, 0.0}, {0.0, -9.1e-3},
-                                   {0.0, 17.1e-3}, {NAN, 0.0},     {0.0, INFINITY}};
+    const struct vec2 outside[] = {{-7.1e-3, 0.0},     {31.1e-3, 0.0},
+                                   {0.0, -9.1e-3},     {0.0, 17.1e-3},
+                                   {(double)NAN, 0.0}, {0.0, (double)INFINITY}};
     for (size_t k = 0; k < sizeof outside / sizeof *outside; k++) {
         assert_int_equal(field_at(s.field, outside[k], &v), STATUS_SIZE);
         assert_false(field_covers(&s.grid, outside[k]));
@@ -161,7 +163,8 @@ static void test_sides_reflect_with_their_signs(void **state)
     scene_disc(p, "rod", 1.0, 9.3e-3, 8.1e-3, 4.7e-3);
     assert_int_equal(plane_solve(&g, KIND, 1.0, 1, &s, NULL), STATUS_OK);
     for (int k = 0; k < 50; k++) {
-        const double a = 15e-3 + 14e-3 * sin(2.385 * k), b = 8e-3 + 7e-3 * sin(1.711 * k);
+        const double a = 15e-3 + 14e-3 * sin(2.385 * k),
+                     b = 8e-3 + 7e-3 * sin(1.711 * k);
         const struct field_value v = value_at(&s, a, b), w = value_at(&s, -a, b);
         const struct field_value x = value_at(&s, a, -b), y = value_at(&s, -a, -b);
         assert_int_equal(w.part, v.part);

@@ -33,8 +33,7 @@ static void test_uniform_gradient_has_flux_through_the_sides_only(void **state)
     const double a0 = grid.a[1] - grid.a[0], b0 = grid.b[1] - grid.b[0];
     const double a1 = grid.a[grid.na - 1] - grid.a[grid.na - 2];
     const double b1 = grid.b[grid.nb - 1] - grid.b[grid.nb - 2];
-    assert_close(side[SIDE_A_LOW] + side[SIDE_A_HIGH], 0.0, 0.0,
-                 1.3 * (a0 + a1));
+    assert_close(side[SIDE_A_LOW] + side[SIDE_A_HIGH], 0.0, 0.0, 1.3 * (a0 + a1));
     assert_close(side[SIDE_A_LOW], -slope_a * 26.0, 0.0, 2.4 * (b0 + b1 + a0 + a1));
     assert_close(side[SIDE_B_LOW], -slope_b * 38.0, 0.0, 2.4 * (b0 + b1 + a0 + a1));
     mem_free(phi);

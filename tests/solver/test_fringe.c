@@ -11,10 +11,10 @@
 #include "solver/fringe.h"
 #include "tests/support/scene.h"
 
-#define ENTRANCE -0.0471
+#define ENTRANCE (-0.0471)
 #define EXIT     0.0563
 #define WIDTH    2.9e-3
-#define CENTRE   -0.1037
+#define CENTRE   (-0.1037)
 
 static double f[PATH_POINTS];
 

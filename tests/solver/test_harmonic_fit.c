@@ -24,8 +24,8 @@ static double harmonic_of(int degree, struct vec2 at, struct vec2 *gradient)
         const double complex c = 1.0 + 0.3 * n - 0.7 * n * (double complex)I;
         sum += c * power;
         if (n < degree)
-            slope += (n + 1) * (1.0 + 0.3 * (n + 1) - 0.7 * (n + 1) * (double complex)I) *
-                     power;
+            slope += (n + 1) *
+                     (1.0 + 0.3 * (n + 1) - 0.7 * (n + 1) * (double complex)I) * power;
         power *= w;
     }
     *gradient = (struct vec2){creal(slope) / SIZE, -cimag(slope) / SIZE};
@@ -92,8 +92,8 @@ static void test_seventh_degree_is_beyond_the_fit(void **state)
     lattice(7, 1.0, points);
     assert_int_equal(harmonic_fit(points, POINTS, CENTRE, work, &fit), STATUS_OK);
     const struct vec2 at = {CENTRE.a + 0.8 * SIZE, CENTRE.b + 0.7 * SIZE};
-    assert_true(fabs(harmonic_value(&fit, at, &gradient) -
-                     harmonic_of(7, at, &unused)) > 1e-3);
+    assert_true(
+        fabs(harmonic_value(&fit, at, &gradient) - harmonic_of(7, at, &unused)) > 1e-3);
 }
 
 static void test_few_points_lower_the_degree(void **state)
@@ -155,8 +155,9 @@ static void test_value_that_is_not_finite_is_not_trusted(void **state)
     struct fit_point points[POINTS];
     struct harmonic fit;
     lattice(3, 1.0, points);
-    points[11].value = NAN;
-    assert_int_equal(harmonic_fit(points, POINTS, CENTRE, work, &fit), STATUS_UNTRUSTED);
+    points[11].value = (double)NAN;
+    assert_int_equal(harmonic_fit(points, POINTS, CENTRE, work, &fit),
+                     STATUS_UNTRUSTED);
 }
 
 int main(void)

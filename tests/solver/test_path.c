@@ -61,15 +61,16 @@ static void test_integral_is_of_fourth_order(void **state)
     assert_close(error, whole * h * h * h * h / 180.0, 0.05, 1e-14);
 }
 
-/* The odd interval at the end goes by the trapezoid rule: h^3/6 for z^2. */
-static void test_odd_interval_is_a_trapezoid(void **state)
+/* A single interval goes by the trapezoid rule: h^3/6 for z^2. Other odd numbers begin
+ * with the 3/8 rule, exact for cubics as Simpson's. */
+static void test_odd_numbers_of_intervals(void **state)
 {
     (void)state;
     const double h = 3.0 / (PATH_POINTS - 1);
-    assert_close(integral_of(square, 400, 401), h * h * h / 3.0 + h * h * h / 6.0, 1e-12,
-                 0.0);
-    assert_close(integral_of(square, 400, 403), 9.0 * h * h * h + h * h * h / 6.0, 1e-12,
-                 0.0);
+    assert_close(integral_of(square, 400, 401), h * h * h / 3.0 + h * h * h / 6.0,
+                 1e-12, 0.0);
+    assert_close(integral_of(square, 400, 403), 9.0 * h * h * h, 1e-12, 0.0);
+    assert_close(integral_of(cubic, 400, 999), cubic_integral(1.5 - h), 1e-13, 0.0);
 }
 
 static void test_empty_integral_is_zero(void **state)
@@ -170,7 +171,7 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(test_simpson_is_exact_for_cubics),
         cmocka_unit_test(test_integral_is_of_fourth_order),
-        cmocka_unit_test(test_odd_interval_is_a_trapezoid),
+        cmocka_unit_test(test_odd_numbers_of_intervals),
         cmocka_unit_test(test_empty_integral_is_zero),
         cmocka_unit_test(test_range_is_the_file_s_or_what_the_planes_share),
         cmocka_unit_test(test_samples_are_the_field_on_every_line),

@@ -47,9 +47,9 @@ static void scene(struct geometry *g, const struct map *m, double setting, doubl
     const struct vec2 low = mapped(m, -31e-3, -19e-3), high = mapped(m, 27e-3, 23e-3);
     const struct vec2 rod = mapped(m, 7.3e-3, -4.1e-3);
     scene_begin(g, setting, false);
-    struct plane *p = scene_plane(g, PLANE_ELECTRIC_ACROSS, fmin(low.a, high.a),
-                                  fmax(low.a, high.a), fmin(low.b, high.b),
-                                  fmax(low.b, high.b));
+    struct plane *p =
+        scene_plane(g, PLANE_ELECTRIC_ACROSS, fmin(low.a, high.a), fmax(low.a, high.a),
+                    fmin(low.b, high.b), fmax(low.b, high.b));
     add_box(p, m, "plate", gain, -14e-3, -3e-3, 8e-3, 11e-3, 1e-3);
     add_box(p, m, "bar", 0.3 * gain, 15e-3, 18e-3, 9e-3, 17e-3, 0.0);
     scene_disc(p, "rod", -0.6 * gain, rod.a, rod.b, 3.7e-3 * stretch_of(m));
@@ -98,8 +98,7 @@ static void split_supplies(struct geometry *g, double first, double second, doub
     struct plane *p = &g->planes[PLANE_ELECTRIC_ACROSS];
     g->supplies = mem_resize(g->supplies, 2, sizeof *g->supplies);
     assert_non_null(g->supplies);
-    g->supplies[1] =
-        (struct supply){mem_text("other"), second, false, true, {0, 0}};
+    g->supplies[1] = (struct supply){mem_text("other"), second, false, true, {0, 0}};
     g->supplies[0].setting = first;
     g->supply_count = p->supply_count = 2;
     for (size_t k = 0; k < p->part_count; k++) {

@@ -8,9 +8,9 @@
 
 #include "solver/ratio.h"
 
-#define HALF 0.1     /* m, the path runs from -HALF to HALF */
-#define E0   15.5e3  /* V/m */
-#define B0   -0.1037 /* T */
+#define HALF 0.1       /* m, the path runs from -HALF to HALF */
+#define E0   15.5e3    /* V/m */
+#define B0   (-0.1037) /* T */
 
 static double e_samples[PATH_LINES][PATH_POINTS], b_samples[PATH_LINES][PATH_POINTS];
 
@@ -148,7 +148,7 @@ static void test_ratio_is_defined_for_fields_of_the_centre_s_sign(void **state)
     assert_false(ratio_is_defined(&path, 0, 0, 0, RATIO_FLOOR));
     e_samples[0][PATH_POINTS / 2] *= -1.0;
     assert_false(ratio_is_defined(&path, 0, 0, PATH_POINTS / 2, RATIO_FLOOR));
-    e_samples[0][PATH_POINTS / 2] = NAN;
+    e_samples[0][PATH_POINTS / 2] = (double)NAN;
     assert_false(ratio_is_defined(&path, 0, 0, PATH_POINTS / 2, RATIO_FLOOR));
 }
 
@@ -174,8 +174,8 @@ static void test_error_is_relative_to_the_reference(void **state)
     fill(&path, negative_slope, parabola, 0.0);
     for (int k = 200; k < 1000; k += 37) {
         const double z = path.z[k];
-        assert_close(ratio_error(&path, 0, 0, k),
-                     negative_slope(z) / parabola(z) - 1.0, 0.0, 1e-14);
+        assert_close(ratio_error(&path, 0, 0, k), negative_slope(z) / parabola(z) - 1.0,
+                     0.0, 1e-14);
     }
 }
 

@@ -15,9 +15,13 @@ enum { POLYNOMIALS = 7, QUADRATICS = 5 };
 static double polynomial(int k, double a, double b)
 {
     const double x = 1e3 * a, y = 1e3 * b;
-    const double values[POLYNOMIALS] = {
-        1.0, x, y, x * y, x * x - y * y, x * x * x - 3.0 * x * y * y,
-        3.0 * x * x * y - y * y * y};
+    const double values[POLYNOMIALS] = {1.0,
+                                        x,
+                                        y,
+                                        x * y,
+                                        x * x - y * y,
+                                        x * x * x - 3.0 * x * y * y,
+                                        3.0 * x * x * y - y * y * y};
     return values[k];
 }
 
@@ -62,9 +66,9 @@ static double worst(const struct grid *grid, int polynomials, bool cut, int *nod
 
 static void build(struct geometry *g, struct grid *grid)
 {
-    assert_int_equal(grid_build(&g->planes[PLANE_ELECTRIC_ACROSS], 1.0, 1, 1e9, grid,
-                                NULL),
-                     STATUS_OK);
+    assert_int_equal(
+        grid_build(&g->planes[PLANE_ELECTRIC_ACROSS], 1.0, 1, 1e9, grid, NULL),
+        STATUS_OK);
 }
 
 /* Mapped lines are uniform to about 1e-12 only. */
@@ -102,7 +106,8 @@ static void test_graded_lines_annihilate_quadratic_harmonics(void **state)
     scene_box(scene_plane(&g, PLANE_ELECTRIC_ACROSS, -7e-3, 31e-3, 3e-3, 29e-3), "box",
               1.0, 4e-3, 9e-3, 11e-3, 13e-3, 0.0);
     build(&g, &grid);
-    assert_true(grid.a[1] - grid.a[0] > 1.5 * (grid.a[grid_interval(grid.a, grid.na, 4e-3) + 1] - 4e-3));
+    assert_true(grid.a[1] - grid.a[0] >
+                1.5 * (grid.a[grid_interval(grid.a, grid.na, 4e-3) + 1] - 4e-3));
     assert_at_most(worst(&grid, QUADRATICS, false, &nodes), 1e-14);
     assert_true(nodes > 300);
     grid_free(&grid);
@@ -168,7 +173,8 @@ static void test_links_are_seen_alike_from_both_ends(void **state)
         stencil_at(&grid, n + grid.na, &north);
         assert_close(here.weight[LEG_EAST], east.weight[LEG_WEST], 1e-14, 0.0);
         assert_close(here.weight[LEG_NORTH], north.weight[LEG_SOUTH], 1e-14, 0.0);
-        assert_close(stencil_link(&grid, n, LEG_EAST), here.weight[LEG_EAST], 1e-14, 0.0);
+        assert_close(stencil_link(&grid, n, LEG_EAST), here.weight[LEG_EAST], 1e-14,
+                     0.0);
         assert_close(stencil_link(&grid, n, LEG_NORTH), here.weight[LEG_NORTH], 1e-14,
                      0.0);
     }

@@ -26,8 +26,8 @@ static void solve(const struct geometry *g, double fineness, int level,
 static void walls(struct geometry *g, bool half, bool odd)
 {
     scene_begin(g, VOLTS, false);
-    struct plane *p = scene_plane(g, PLANE_ELECTRIC_ACROSS, half ? 0.0 : -59.5e-3, 59.5e-3,
-                                  -23e-3, 23e-3);
+    struct plane *p = scene_plane(g, PLANE_ELECTRIC_ACROSS, half ? 0.0 : -59.5e-3,
+                                  59.5e-3, -23e-3, 23e-3);
     if (odd) {
         scene_wall(p, SIDE_A_HIGH, 1.0, 1.0);
         if (!half)

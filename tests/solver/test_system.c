@@ -184,7 +184,7 @@ static void test_zero_drive_gives_zero(void **state)
 static void test_value_that_is_not_finite_is_not_trusted(void **state)
 {
     (void)state;
-    double values[2] = {NAN, 1.0};
+    double values[2] = {(double)NAN, 1.0};
     const struct drive drive = {values, {0.0}, {0.0}};
     struct geometry g;
     struct grid grid;

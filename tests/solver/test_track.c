@@ -8,7 +8,7 @@
 #include "solver/track.h"
 #include "tests/support/scene.h"
 
-#define FROM  -60e-3
+#define FROM  (-60e-3)
 #define TO    60e-3
 #define HALF  30e-3
 #define STEPS 600
@@ -36,9 +36,11 @@ static void begin(struct bench *bench, double e, double b)
     scene_wall(m, SIDE_B_LOW, -amperes, -amperes);
     scene_wall(m, SIDE_B_HIGH, amperes, amperes);
     assert_int_equal(
-        plane_solve(g, PLANE_ELECTRIC_ALONG, 0.5, 0, &bench->electric, NULL), STATUS_OK);
+        plane_solve(g, PLANE_ELECTRIC_ALONG, 0.5, 0, &bench->electric, NULL),
+        STATUS_OK);
     assert_int_equal(
-        plane_solve(g, PLANE_MAGNETIC_ALONG, 0.5, 0, &bench->magnetic, NULL), STATUS_OK);
+        plane_solve(g, PLANE_MAGNETIC_ALONG, 0.5, 0, &bench->magnetic, NULL),
+        STATUS_OK);
     bench->view = (struct view){g,
                                 {[PLANE_ELECTRIC_ALONG] = &bench->electric,
                                  [PLANE_MAGNETIC_ALONG] = &bench->magnetic}};
@@ -56,8 +58,8 @@ static struct exit_state track(const struct bench *bench, double mass, double ch
 {
     const struct particle particle = {mass, charge, speed};
     struct exit_state exit;
-    assert_int_equal(
-        track_particle(&bench->view, &particle, FROM, TO, steps, &exit), STATUS_OK);
+    assert_int_equal(track_particle(&bench->view, &particle, FROM, TO, steps, &exit),
+                     STATUS_OK);
     return exit;
 }
 
@@ -141,7 +143,8 @@ static void test_small_speed_change_follows_first_order_optics(void **state)
 {
     (void)state;
     const double e = 15.5e3, b = 0.1037, u = e / b, mass = 39.948 * ATOMIC_MASS;
-    const double radius = mass * u / (ELEMENTARY_CHARGE * b), theta = (TO - FROM) / radius;
+    const double radius = mass * u / (ELEMENTARY_CHARGE * b),
+                 theta = (TO - FROM) / radius;
     const double change = 1e-5, drift = 0.5;
     struct bench bench;
     begin(&bench, e, b);
@@ -152,8 +155,8 @@ static void test_small_speed_change_follows_first_order_optics(void **state)
     const double x = (up.x - down.x) / (2.0 * change);
     const double slope = (up.slope - down.slope) / (2.0 * change);
     assert_close(x, -radius * (1.0 - cos(theta)), 1e-6, 0.0);
-    assert_close(x + drift * slope,
-                 -(radius * (1.0 - cos(theta)) + drift * sin(theta)), 1e-6, 0.0);
+    assert_close(x + drift * slope, -(radius * (1.0 - cos(theta)) + drift * sin(theta)),
+                 1e-6, 0.0);
     end(&bench);
 }
 
@@ -170,7 +173,8 @@ static void test_relativistic_circle_has_the_relativistic_radius(void **state)
         track(&bench, ELECTRON_MASS, -ELEMENTARY_CHARGE, speed, STEPS);
     assert_false(exit.lost);
     assert_close(exit.x, radius - sqrt(radius * radius - length * length), 1e-8, 0.0);
-    assert_close(exit.slope, length / sqrt(radius * radius - length * length), 1e-8, 0.0);
+    assert_close(exit.slope, length / sqrt(radius * radius - length * length), 1e-8,
+                 0.0);
     end(&bench);
 }
 
@@ -182,8 +186,7 @@ static void test_relativistic_fall_is_a_catenary(void **state)
     const double e = 0.9e6, speed = 0.7 * SPEED_OF_LIGHT, length = TO - FROM;
     const double gamma = 1.0 / sqrt(1.0 - 0.49), mass = ELECTRON_MASS;
     const double energy = gamma * mass * SPEED_OF_LIGHT * SPEED_OF_LIGHT;
-    const double k =
-        ELEMENTARY_CHARGE * e / (gamma * mass * speed * SPEED_OF_LIGHT);
+    const double k = ELEMENTARY_CHARGE * e / (gamma * mass * speed * SPEED_OF_LIGHT);
     struct bench bench;
     begin(&bench, e, 0.0);
     const struct exit_state exit = track(&bench, mass, ELEMENTARY_CHARGE, speed, STEPS);
@@ -205,10 +208,10 @@ static void test_relativistic_slope_vanishes_after_half_a_turn(void **state)
     const double b = PI / length * gamma * p / ELEMENTARY_CHARGE, change = 1e-6;
     struct bench bench;
     begin(&bench, speed * b, b);
-    const struct exit_state up = track(&bench, ELECTRON_MASS, ELEMENTARY_CHARGE,
-                                       speed * (1.0 + change), STEPS);
-    const struct exit_state down = track(&bench, ELECTRON_MASS, ELEMENTARY_CHARGE,
-                                         speed * (1.0 - change), STEPS);
+    const struct exit_state up =
+        track(&bench, ELECTRON_MASS, ELEMENTARY_CHARGE, speed * (1.0 + change), STEPS);
+    const struct exit_state down =
+        track(&bench, ELECTRON_MASS, ELEMENTARY_CHARGE, speed * (1.0 - change), STEPS);
     assert_false(up.lost || down.lost);
     assert_close((up.slope - down.slope) / (2.0 * change), 0.0, 0.0, 1e-4);
     assert_true(up.x < -change * length / 10.0);
@@ -224,9 +227,9 @@ static void test_steps_are_of_fourth_order(void **state)
     struct bench bench;
     begin(&bench, 0.0, b);
     for (int k = 0; k < 3; k++)
-        error[k] = fabs(
-            track(&bench, ELECTRON_MASS, -ELEMENTARY_CHARGE, speed, 8 << k).slope -
-            length / sqrt(radius * radius - length * length));
+        error[k] =
+            fabs(track(&bench, ELECTRON_MASS, -ELEMENTARY_CHARGE, speed, 8 << k).slope -
+                 length / sqrt(radius * radius - length * length));
     assert_close(log2(error[0] / error[2]) / 2.0, 4.0, 0.0, 0.3);
     end(&bench);
 }
@@ -236,8 +239,8 @@ static void test_particle_that_leaves_or_turns_back_is_lost(void **state)
     (void)state;
     struct bench bench;
     begin(&bench, 0.0, 0.9); /* radius far below the region */
-    const struct exit_state turned = track(&bench, 39.948 * ATOMIC_MASS,
-                                           ELEMENTARY_CHARGE, 20e3, STEPS);
+    const struct exit_state turned =
+        track(&bench, 39.948 * ATOMIC_MASS, ELEMENTARY_CHARGE, 20e3, STEPS);
     assert_true(turned.lost);
     assert_true(turned.lost_at > FROM && turned.lost_at < TO);
     assert_true(turned.x == 0.0 && turned.slope == 0.0);

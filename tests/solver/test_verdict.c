@@ -110,10 +110,15 @@ static void test_at_least_judges_the_other_way(void **state)
 static void test_every_limit_finds_its_figure(void **state)
 {
     (void)state;
-    static const char *const names[LIMIT_KINDS] = {
-        "ratio_error_peak_across", "flat_length", "even_radius",
-        "detuning",                "length_mismatch", "kick",
-        "offset",                  "mass_resolution", "surface_field"};
+    static const char *const names[LIMIT_KINDS] = {"ratio_error_peak_across",
+                                                   "flat_length",
+                                                   "even_radius",
+                                                   "detuning",
+                                                   "length_mismatch",
+                                                   "kick",
+                                                   "offset",
+                                                   "mass_resolution",
+                                                   "surface_field"};
     for (int k = 0; k < LIMIT_KINDS; k++) {
         const bool least = geometry_limit_rule((enum limit_kind)k)->at_least;
         assert_verdict((enum limit_kind)k, names[k], 2.0, least ? 3.0 : 1.0, 0.5, true,

@@ -17,7 +17,7 @@
 #define assert_close(got, want, rel, abs_tol)                                          \
     do {                                                                               \
         double got_ = (got), want_ = (want);                                           \
-        double bound_ = (abs_tol) + (rel) * fabs(want_);                               \
+        double bound_ = (abs_tol) + (rel)*fabs(want_);                                 \
         if (!(fabs(got_ - want_) <= bound_))                                           \
             fail_msg("%s = %.17g, want %.17g within %.3g (off by %.3g)", #got, got_,   \
                      want_, bound_, got_ - want_);                                     \
