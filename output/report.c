@@ -108,14 +108,25 @@ static void print_figure(struct sink *sink, const struct figure *figure)
     sink_print(sink, "</tr>\n");
 }
 
+static bool has_group(const struct figures *figures, int group)
+{
+    for (size_t k = 0; k < figures->count; k++)
+        if ((int)figures->items[k].group == group)
+            return true;
+    return false;
+}
+
 static void print_figures(struct sink *sink, const struct figures *figures)
 {
     for (int group = 0; group < FIGURE_GROUPS; group++) {
+        if (!has_group(figures, group))
+            continue;
         print_element(sink, "h2", words_group((enum figure_group)group));
         sink_print(sink, "\n<table>\n<tr><th>figure</th><th>value</th>"
                          "<th>planes</th><th>note</th></tr>\n");
         for (size_t k = 0; k < figures->count; k++)
-            if ((int)figures->items[k].group == group)
+            if ((int)figures->items[k].group == group &&
+                !words_is_zero_term(&figures->items[k]))
                 print_figure(sink, &figures->items[k]);
         sink_print(sink, "</table>\n");
     }
@@ -187,10 +198,15 @@ static bool is_picture(const char *name)
 static enum status print_pictures(struct sink *sink, const struct folder *folder,
                                   struct messages *messages)
 {
+    static const char *const first[] = {"path.svg", "ratio_map.svg"};
     enum status status = STATUS_OK;
-    sink_print(sink, "<h2>Plots</h2>\n");
+    for (size_t f = 0; f < 2; f++)
+        for (size_t k = 0; !status && k < folder->count; k++)
+            if (strcmp(folder->names[k], first[f]) == 0)
+                status = print_picture(sink, folder, first[f], messages);
     for (size_t k = 0; !status && k < folder->count; k++)
-        if (is_picture(folder->names[k]))
+        if (is_picture(folder->names[k]) && strcmp(folder->names[k], first[0]) != 0 &&
+            strcmp(folder->names[k], first[1]) != 0)
             status = print_picture(sink, folder, folder->names[k], messages);
     return status;
 }
@@ -239,8 +255,8 @@ enum status report_write(struct folder *folder, const struct result *result,
     if (status)
         return status;
     print_head(&sink, result);
-    print_figures(&sink, &result->figures);
     status = print_pictures(&sink, folder, messages);
+    print_figures(&sink, &result->figures);
     print_trust(&sink, result);
     sink_print(&sink, "</body>\n</html>\n");
     if (!status)

@@ -2,7 +2,6 @@
 
 #include "output/sheet_figures.h"
 
-#include <math.h>
 #include <stdbool.h>
 #include <stdio.h>
 #include <string.h>
@@ -10,9 +9,6 @@
 #include "output/number.h"
 #include "output/sheet_layout.h"
 #include "output/words.h"
-
-/* Expansion terms smaller than this are left out of the table (not of the summary). */
-#define TERM_SHOWN 1e-9
 
 enum { PART_COLUMN = 26, CELL_COLUMN = 19, TERM_COLUMN = 16 };
 
@@ -96,8 +92,7 @@ static bool write_term(struct sink *sink, const struct figures *figures, int n,
     for (int k = 0; k < 3; k++) {
         terms[k] = find_term(figures, EXPANSIONS[k], n, skew);
         any = any || terms[k];
-        shown = shown || (terms[k] && (fabs(terms[k]->value) > TERM_SHOWN ||
-                                       terms[k]->uncertainty > TERM_SHOWN));
+        shown = shown || (terms[k] && !words_is_zero_term(terms[k]));
     }
     if (!shown)
         return any;
@@ -119,7 +114,7 @@ static void write_expansions(struct sink *sink, const struct figures *figures)
         first = find_term(figures, EXPANSIONS[1], 1, false);
     if (first == NULL)
         return;
-    sink_print(sink, "  expansion about the axis, terms above %.0e\n", TERM_SHOWN);
+    sink_print(sink, "  expansion about the axis, terms above %.0e\n", WORDS_ZERO_TERM);
     if (first->note)
         sheet_wrap(sink, SHEET_NOTE_INDENT, first->note);
     sink_print(sink, "    n        %-*s  %-*s  %s\n", TERM_COLUMN, "e_n of E",

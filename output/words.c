@@ -4,6 +4,7 @@
 
 #include "output/words.h"
 
+#include <math.h>
 #include <stdio.h>
 #include <string.h>
 
@@ -116,4 +117,11 @@ const char *words_base_name(const char *path)
         return "";
     const char *slash = strrchr(path, '/');
     return slash ? slash + 1 : path;
+}
+
+bool words_is_zero_term(const struct figure *figure)
+{
+    return strncmp(figure->name, "expansion_", strlen("expansion_")) == 0 &&
+           figure->state != FIGURE_MISSING &&
+           fabs(figure->value) + figure->uncertainty < WORDS_ZERO_TERM;
 }

@@ -6,6 +6,8 @@
 
 #include <stddef.h>
 
+#include <stdbool.h>
+
 #include "mesh/geometry.h"
 #include "solver/figure.h"
 #include "solver/result.h"
@@ -30,6 +32,13 @@ const char *words_caution(size_t k);
 
 /** The verdict in one line; text[size]. */
 void words_verdict(const struct verdict *verdict, char *text, size_t size);
+
+/** True for a term of an expansion that is zero for practical purposes, below
+ *  WORDS_ZERO_TERM with its uncertainty: sheet and report leave it out, the summary keeps
+ *  it. */
+bool words_is_zero_term(const struct figure *figure);
+
+#define WORDS_ZERO_TERM 1e-9
 
 /** File name without its folders; "" for NULL. */
 const char *words_base_name(const char *path);

@@ -204,13 +204,13 @@ static double expansion_radius(const struct geometry *g)
 }
 
 static enum status expand(struct maker *maker, const struct plane_solution *plane,
-                          double radius, struct figure_key key, struct expansion *e,
-                          bool *good)
+                          double radius, struct figure_key key, const char *lack,
+                          struct expansion *e, bool *good)
 {
     char note[NOTE_SIZE];
     *good = false;
     if (plane == NULL) {
-        maker_miss(maker, key, NULL, "needs its across plane");
+        maker_miss(maker, key, NULL, lack);
         return STATUS_OK;
     }
     maker->planes = plane_bit(plane->plane->kind);
@@ -235,13 +235,13 @@ static void add_expansions(struct maker *maker, const struct view *view)
     bool good_e = false, good_b = false;
     enum status status = expand(
         maker, view->planes[PLANE_ELECTRIC_ACROSS], radius,
-        (struct figure_key){"expansion_electric", "expansion of E, e_n", "1", 1.0}, &e,
-        &good_e);
+        (struct figure_key){"expansion_electric", "expansion of E, e_n", "1", 1.0},
+        "needs electric_across", &e, &good_e);
     if (status == STATUS_OK)
         status = expand(
             maker, view->planes[PLANE_MAGNETIC_ACROSS], radius,
             (struct figure_key){"expansion_magnetic", "expansion of B, b_n", "1", 1.0},
-            &b, &good_b);
+            "needs magnetic_across", &b, &good_b);
     if (maker->status == STATUS_OK)
         maker->status = status;
     maker->planes = plane_bit(PLANE_ELECTRIC_ACROSS) | plane_bit(PLANE_MAGNETIC_ACROSS);

@@ -107,7 +107,7 @@ static void compare_profile(const struct geometry *g, enum plane_kind kind, doub
 static void test_thin_plate_edge_follows_maxwell(void **state)
 {
     (void)state;
-    const double d = 23e-3, volts = 350.0, reach = 300.0 * d;
+    const double d = 23e-3, volts = 350.0, reach = 120.0 * d;
     struct geometry g;
     scene_begin(&g, volts, false);
     scene_box(half_gap(&g, PLANE_ELECTRIC_ALONG, reach), "plate", 0.5, -reach, 0.0,
