@@ -90,6 +90,15 @@ double geometry_potential(const struct geometry *geometry,
     return sum;
 }
 
+bool geometry_probe_counts(const struct geometry *geometry, const struct probe *probe,
+                           enum plane_kind kind)
+{
+    const bool along = geometry->planes[PLANE_ELECTRIC_ALONG].present ||
+                       geometry->planes[PLANE_MAGNETIC_ALONG].present;
+    return plane_kind_is_along(kind) || !along || !probe->has_z ||
+           probe->z == geometry->reference_z;
+}
+
 static void plane_free(struct plane *plane)
 {
     for (size_t k = 0; k < plane->part_count; k++) {

@@ -186,6 +186,12 @@ const struct limit_rule *geometry_limit_rule(enum limit_kind kind);
  *  a gain array that is NULL counts as zeros. */
 bool linear_equal(const struct linear *p, const struct linear *q, size_t supply_count);
 
+/** True if a probe that names no plane is read in planes of this kind: always in planes
+ *  along the beam; in planes across it, which stand for the reference z, if it stands
+ *  there, gives no z, or no plane along the beam knows z. */
+bool geometry_probe_counts(const struct geometry *geometry, const struct probe *probe,
+                           enum plane_kind kind);
+
 /** Value of a potential at the settings of the supplies (V or A). */
 double geometry_potential(const struct geometry *geometry,
                           const struct linear *potential);

@@ -120,12 +120,6 @@ static bool holds_point(const struct plane *plane, struct vec2 p)
            plane_covers(plane, 1, point_interval(p.b));
 }
 
-static bool any_along(const struct geometry *geometry)
-{
-    return geometry->planes[PLANE_ELECTRIC_ALONG].present ||
-           geometry->planes[PLANE_MAGNETIC_ALONG].present;
-}
-
 static void check_named_probe(struct check *check, const struct probe *probe)
 {
     const struct plane *plane = &check->geometry->planes[probe->plane];
@@ -142,7 +136,6 @@ static void check_named_probe(struct check *check, const struct probe *probe)
            covers(check, plane, 1, point_interval(p.b), "the probe", probe->place));
 }
 
-/* A plane across the beam stands for z = 0 wherever a plane along it knows z. */
 static void check_probe(struct check *check, const struct probe *probe)
 {
     const struct geometry *geometry = check->geometry;
@@ -153,8 +146,7 @@ static void check_probe(struct check *check, const struct probe *probe)
     }
     for (int k = 0; k < PLANE_KINDS; k++) {
         const struct plane *plane = &geometry->planes[k];
-        bool counts =
-            plane_kind_is_along(plane->kind) || probe->z == 0 || !any_along(geometry);
+        bool counts = geometry_probe_counts(geometry, probe, (enum plane_kind)k);
         held = held || (counts && holds_point(plane, project(plane, probe->x, probe->y,
                                                              probe->z)));
     }

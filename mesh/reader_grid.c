@@ -8,7 +8,7 @@
 #include "mesh/reader_sections.h"
 
 #define FINENESS_MIN 0.1
-#define FINENESS_MAX 100.0
+#define FINENESS_MAX 20.0
 #define MEMORY_MIN   1e6  /* B: less cannot hold any grid */
 #define MEMORY_MAX   1e15 /* B */
 
@@ -19,7 +19,7 @@ static void read_fineness(struct reader *reader, const struct node *node,
     if (!reader_positive(reader, node, "fineness", &wanted_number, &value))
         return;
     if (value < FINENESS_MIN || value > FINENESS_MAX)
-        reader_expected(reader, node, "fineness", "a number from 0.1 to 100");
+        reader_expected(reader, node, "fineness", "a number from 0.1 to 20");
     else
         *fineness = value;
 }

@@ -136,8 +136,9 @@ static bool read_lattice_axis(struct reader *reader, const struct node *node,
              ok;
     if (!ok)
         return false;
-    double steps = (axis->to - axis->from) / axis->step;
-    if (!(axis->step > 0) || !(axis->from <= axis->to) || !(steps < LATTICE_POINTS_MAX))
+    const double steps =
+        axis->step > 0 ? (axis->to - axis->from) / axis->step : (double)INFINITY;
+    if (!(axis->from <= axis->to) || !(steps < LATTICE_POINTS_MAX))
         return mistakes_add(&reader->mistakes, node->place,
                             "the lattice along %s cannot be built; expected from not "
                             "above to and a step greater than 0; found %g mm to %g mm "

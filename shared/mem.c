@@ -37,7 +37,7 @@ char *mem_text(const char *text)
     size_t length = strlen(text);
     char *copy = mem_new(length + 1, 1);
     if (copy != NULL)
-        memcpy(copy, text, length);
+        memcpy(copy, text, length + 1);
     return copy;
 }
 

@@ -488,7 +488,7 @@ enum status field_create(const struct grid *grid, const double *phi,
     made->phi = phi;
     made->part_value = part_value;
     made->fit_of = MEM_NEW(nodes, int);
-    made->work = MEM_NEW(POINTS_MAX * (HARMONIC_TERMS + 1), double);
+    made->work = MEM_NEW((size_t)POINTS_MAX * (HARMONIC_TERMS + 1), double);
     if (made->fit_of == NULL || made->work == NULL) {
         field_destroy(&made);
         return STATUS_MEMORY;

@@ -11,7 +11,7 @@
 #include "solver/cross_section.h"
 #include "solver/figure_maker.h"
 
-enum { CIRCLE_POINTS = 48, RADIUS_STEPS = 40, NOTE_SIZE = 240, TERMS_SHOWN = 6 };
+enum { CIRCLE_POINTS = 48, RADIUS_STEPS = 40, NOTE_SIZE = 240 };
 
 #define BOUND_DEFAULT 1e-3
 
@@ -180,7 +180,7 @@ static void add_terms(struct maker *maker, struct figure_key key,
                       const struct expansion *e, const struct expansion *minus,
                       const char *note)
 {
-    for (int n = 1; n <= TERMS_SHOWN && n < EXPANSION_TERMS; n++) {
+    for (int n = 1; n < EXPANSION_TERMS; n++) {
         char subject[32];
         const double real = e->real[n] - (minus != NULL ? minus->real[n] : 0.0);
         const double imag = e->imag[n] - (minus != NULL ? minus->imag[n] : 0.0);
@@ -191,7 +191,8 @@ static void add_terms(struct maker *maker, struct figure_key key,
     }
 }
 
-/* r0: the footprint's half diagonal reach, or a quarter of the reach of the planes. */
+/* r0: the larger half width of the footprint, or a twentieth of the smaller height of the
+ * across planes. */
 static double expansion_radius(const struct geometry *g)
 {
     if (g->beam.has_footprint)

@@ -61,7 +61,7 @@ static void scale_columns(double *matrix, int count, int terms, double *norms)
 enum status harmonic_fit(const struct fit_point *points, int count, struct vec2 centre,
                          double *work, struct harmonic *fit)
 {
-    double *matrix = work, *right = work + count * HARMONIC_TERMS;
+    double *matrix = work, *right = work + (size_t)count * HARMONIC_TERMS;
     double norms[HARMONIC_TERMS];
     lapack_int pivots[HARMONIC_TERMS] = {0}, rank = 0;
     *fit = (struct harmonic){
@@ -88,7 +88,8 @@ double harmonic_value(const struct harmonic *fit, struct vec2 at, struct vec2 *g
     double value = fit->coefficient[0];
     *gradient = (struct vec2){0.0, 0.0};
     for (int n = 1; n <= fit->degree; n++) {
-        const double c = fit->coefficient[2 * n - 1], s = fit->coefficient[2 * n];
+        const double c = fit->coefficient[2 * n - 1],
+                     s = fit->coefficient[2 * (size_t)n];
         const double slope = n / fit->scale;
         /* d/da w^n = n w^(n-1)/scale, d/db w^n = i n w^(n-1)/scale */
         gradient->a += slope * (c * creal(power) + s * cimag(power));

@@ -5,6 +5,7 @@
 
 #include "solver/lattice_field.h"
 
+#include <assert.h>
 #include <string.h>
 
 #include "shared/mem.h"
@@ -66,6 +67,7 @@ static void sheet_combine(const struct sheet *levels, int count, size_t n,
                           struct sheet *best)
 {
     double scale = 0.0;
+    assert(count >= 1);
     const double *parts[RESULT_LEVELS_MAX];
     for (size_t k = 0; k < n; k++) {
         const double size =

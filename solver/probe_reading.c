@@ -17,8 +17,7 @@ static bool belongs(const struct view *view, const struct probe *probe,
     const struct plane_solution *plane = view->planes[kind];
     if (plane == NULL || (probe->has_plane && probe->plane != kind))
         return false;
-    if (!probe->has_plane && !plane_kind_is_along(kind) && probe->has_z &&
-        probe->z != view->geometry->reference_z)
+    if (!probe->has_plane && !geometry_probe_counts(view->geometry, probe, kind))
         return false;
     return field_covers(&plane->grid, place_in(probe, kind));
 }

@@ -26,7 +26,7 @@ static void test_levels_nest_to_the_last_bit(void **state)
     build(1, &fine, &m);
     assert_int_equal(m, 2 * n - 1);
     for (int k = 0; k < n; k++)
-        assert_true(coarse[k] == fine[2 * k]);
+        assert_true(coarse[k] == fine[2 * (size_t)k]);
     mem_free(coarse);
     mem_free(fine);
 }

@@ -3,82 +3,14 @@
 /* The main job on a small filter with all four planes, and on parts of it. */
 
 #include "tests/support/assert_close.h"
+#include "tests/support/small_filter.h"
 
 #include <string.h>
 
-#include "mesh/geometry_check.h"
-#include "mesh/reader.h"
 #include "shared/mem.h"
 #include "solver/extrapolate.h"
 #include "solver/plane_solution.h"
 #include "solver/run.h"
-
-static const char TEXT[] =
-    "evengap: 1\n"
-    "beam:\n"
-    "  mass: 39.948 u\n"
-    "  charge: 1 e\n"
-    "  energy: 5 keV\n"
-    "  path: {from: -60 mm, to: 60 mm}\n"
-    "  footprint: {x: 2 mm, y: 1.5 mm}\n"
-    "  slit: {at: 300 mm, width: 0.5 mm}\n"
-    "supplies:\n"
-    "  plates: 311 V\n"
-    "  coil: 3183 A\n"
-    "planes:\n"
-    "  electric_along:\n"
-    "    region: {z: [-70 mm, 70 mm], x: [-40 mm, 40 mm]}\n"
-    "    parts:\n"
-    "      upper plate:\n"
-    "        electrode: plates/2\n"
-    "        box: {z: [-30 mm, 30 mm], x: [10 mm, 14 mm]}\n"
-    "        twin: {across: x, potential: -plates/2, name: lower plate}\n"
-    "  magnetic_along:\n"
-    "    region: {z: [-70 mm, 70 mm], y: [-50 mm, 50 mm]}\n"
-    "    parts:\n"
-    "      upper pole:\n"
-    "        pole: coil/2\n"
-    "        box: {z: [-30 mm, 30 mm], y: [20 mm, 40 mm]}\n"
-    "        twin: {across: y, potential: -coil/2, name: lower pole}\n"
-    "  electric_across:\n"
-    "    region: {x: [-40 mm, 40 mm], y: [-20 mm, 20 mm]}\n"
-    "    parts:\n"
-    "      upper plate:\n"
-    "        electrode: plates/2\n"
-    "        box: {x: [10 mm, 14 mm], y: [-14 mm, 14 mm]}\n"
-    "        twin: {across: x, potential: -plates/2, name: lower plate}\n"
-    "  magnetic_across:\n"
-    "    region: {x: [-70 mm, 70 mm], y: [-50 mm, 50 mm]}\n"
-    "    parts:\n"
-    "      upper pole:\n"
-    "        pole: coil/2\n"
-    "        box: {x: [-45 mm, 45 mm], y: [20 mm, 40 mm]}\n"
-    "        twin: {across: y, potential: -coil/2, name: lower pole}\n"
-    "probes:\n"
-    "  - {z: 4 mm, x: 1 mm, y: 1 mm, plane: electric_along}\n"
-    "  - {z: 4 mm, x: 1 mm, y: 1 mm, plane: magnetic_along}\n"
-    "  - {x: 11 mm}\n"
-    "limits:\n"
-    "  ratio_error: 0.9\n"
-    "  kick: 1 rad\n"
-    "  flat_length: 1 m\n"
-    "lattice:\n"
-    "  z: [-60 mm, 60 mm, 4 mm]\n"
-    "  x: [-12 mm, 12 mm, 1 mm]\n"
-    "  y: [-2 mm, 2 mm, 1 mm]\n"
-    "grid: {fineness: 0.5}\n";
-
-static void read_small(struct geometry *g)
-{
-    struct messages messages = {0};
-    enum status status =
-        reader_read_text("small.yaml", TEXT, strlen(TEXT), g, &messages);
-    if (status == STATUS_OK)
-        status = geometry_check(g, &messages);
-    if (status != STATUS_OK)
-        fail_msg("%s", messages.count > 0 ? messages.items[0].text : "no message");
-    messages_free(&messages);
-}
 
 static void run(const struct geometry *g, int levels, struct result *result)
 {
@@ -96,7 +28,7 @@ static struct result whole;
 static int run_whole(void **state)
 {
     (void)state;
-    read_small(&whole_geometry);
+    small_filter(&whole_geometry);
     run(&whole_geometry, 3, &whole);
     return 0;
 }
@@ -405,7 +337,7 @@ static void test_two_runs_give_the_same_bits(void **state)
  * that names it, and nothing that stands claims to come from it. */
 static void run_subset(unsigned planes, struct geometry *g, struct result *r)
 {
-    read_small(g);
+    small_filter(g);
     for (int k = 0; k < PLANE_KINDS; k++)
         g->planes[k].present = (planes & (1u << k)) != 0;
     g->probe_count = 0;
@@ -532,7 +464,7 @@ static void test_grid_beyond_the_memory_budget_is_an_input_error(void **state)
     struct result r;
     struct messages messages = {0};
     const struct run_options options = {0};
-    read_small(&g);
+    small_filter(&g);
     g.memory_budget = 1e5;
     assert_int_equal(run_geometry(&g, &options, &r, &messages), STATUS_INPUT);
     assert_true(messages.errors == 1);
@@ -552,7 +484,7 @@ static void test_failed_allocations_are_reported(void **state)
     enum status status = STATUS_MEMORY;
     long k = 0;
     int failures = 0;
-    read_small(&g);
+    small_filter(&g);
     const struct run_options options = {.levels = 2, .fineness = 0.1};
     while (status != STATUS_OK) {
         struct result r;
