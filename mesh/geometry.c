@@ -99,6 +99,12 @@ bool geometry_probe_counts(const struct geometry *geometry, const struct probe *
            probe->z == geometry->reference_z;
 }
 
+double geometry_ratio_bound(const struct geometry *geometry)
+{
+    const struct limit *limit = &geometry->limits[LIMIT_RATIO_ERROR];
+    return limit->present ? limit->value : 1e-3;
+}
+
 static void plane_free(struct plane *plane)
 {
     for (size_t k = 0; k < plane->part_count; k++) {

@@ -192,6 +192,10 @@ bool linear_equal(const struct linear *p, const struct linear *q, size_t supply_
 bool geometry_probe_counts(const struct geometry *geometry, const struct probe *probe,
                            enum plane_kind kind);
 
+/** The ratio error that bounds flat_length and even_radius: the file's limit, or 1e-3
+ *  (masses 1 in 250 apart, common practice). */
+double geometry_ratio_bound(const struct geometry *geometry);
+
 /** Value of a potential at the settings of the supplies (V or A). */
 double geometry_potential(const struct geometry *geometry,
                           const struct linear *potential);

@@ -7,6 +7,7 @@
 
 #include <math.h>
 
+#include "mesh/gap.h"
 #include "mesh/lines.h"
 #include "shared/constants.h"
 #include "shared/mem.h"
@@ -32,16 +33,13 @@ struct key_list {
 
 static enum status key_append(struct key_list *list, struct key_line key)
 {
-    if (list->count == list->capacity) {
-        size_t capacity = 2 * list->capacity + 8;
-        struct key_line *grown = mem_resize(list->items, capacity, sizeof *grown);
-        if (grown == NULL)
-            return STATUS_MEMORY;
-        list->items = grown;
-        list->capacity = capacity;
-    }
-    list->items[list->count++] = key;
-    return STATUS_OK;
+    void *array = list->items;
+    enum status status =
+        mem_grow(&array, &list->capacity, list->count + 1, sizeof *list->items);
+    list->items = array;
+    if (status == STATUS_OK)
+        list->items[list->count++] = key;
+    return status;
 }
 
 /* The two corners of a thin edge act as one edge on all but the smallest scales: they
@@ -104,34 +102,13 @@ static enum status keys_of_plane(const struct plane *plane, double gap,
     return status;
 }
 
-/* Narrows the free stretch (*below, *above) round 0 of the line through the centre along
- * an axis by the solid stretches of one part. */
-static enum status narrow_gap(const struct part *part, int axis, double tolerance,
-                              double *below, double *above)
-{
-    struct span *spans = NULL;
-    size_t capacity = 0, count = 0;
-    enum status status =
-        shape_spans(&part->shape, axis, 0.0, tolerance, &spans, &capacity, &count);
-    for (size_t k = 0; k < count && status == STATUS_OK; k++) {
-        if (spans[k].high > 0.0)
-            *above = fmin(*above, fmax(spans[k].low, 0.0));
-        if (spans[k].low < 0.0)
-            *below = fmax(*below, fmin(spans[k].high, 0.0));
-    }
-    mem_free(spans);
-    return status;
-}
-
 /* The gap at the filter's centre along one axis; a missing half is taken to be like the
  * other. INFINITY if there is none or the centre is solid. */
 static enum status gap_along(const struct plane *plane, int axis, double tolerance,
                              double *gap)
 {
-    double below = -(double)INFINITY, above = (double)INFINITY;
-    enum status status = STATUS_OK;
-    for (size_t p = 0; p < plane->part_count && status == STATUS_OK; p++)
-        status = narrow_gap(&plane->parts[p], axis, tolerance, &below, &above);
+    double below, above;
+    enum status status = gap_at(plane, axis, (struct vec2){0.0, 0.0}, &below, &above);
     const double half = fmin(above, -below);
     *gap = isfinite(half) && half > tolerance ? 2.0 * half : (double)INFINITY;
     return status;

@@ -61,16 +61,13 @@ static void own_span(struct grid *grid, const struct row *row, struct span span,
 
 static enum status cut_append(struct cut_list *list, struct cut cut)
 {
-    if (list->count == list->capacity) {
-        size_t capacity = 2 * list->capacity + 64;
-        struct cut *grown = mem_resize(list->items, capacity, sizeof *grown);
-        if (grown == NULL)
-            return STATUS_MEMORY;
-        list->items = grown;
-        list->capacity = capacity;
-    }
-    list->items[list->count++] = cut;
-    return STATUS_OK;
+    void *array = list->items;
+    enum status status =
+        mem_grow(&array, &list->capacity, list->count + 1, sizeof *list->items);
+    list->items = array;
+    if (status == STATUS_OK)
+        list->items[list->count++] = cut;
+    return status;
 }
 
 /* Cuts made by the two ends of one solid stretch. */

@@ -14,22 +14,6 @@
 
 #define RING 64 /* directions looked at around a doubtful point */
 
-enum status array_grow(void **array, size_t *capacity, size_t need, size_t size)
-{
-    size_t n = 2 * *capacity < 16 ? 16 : 2 * *capacity;
-    void *grown;
-
-    if (need <= *capacity)
-        return STATUS_OK;
-    n = n < need ? need : n;
-    grown = mem_resize(*array, n, size);
-    if (!grown)
-        return STATUS_MEMORY;
-    *array = grown;
-    *capacity = n;
-    return STATUS_OK;
-}
-
 enum status shape_new(struct shape *shape, size_t edges)
 {
     *shape = (struct shape){0};

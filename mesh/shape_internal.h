@@ -127,8 +127,4 @@ struct vec2 shape_normal(const struct shape *shape, size_t o, size_t k, double t
  *  (along normal) meet. */
 bool shape_is_surface(const struct shape *shape, struct vec2 p, struct vec2 normal);
 
-/** Grows *array to at least `need` items of `size` bytes, at least doubling. */
-enum status array_grow(void **array, size_t *capacity, size_t need,
-                       size_t size) MUST_CHECK;
-
 #endif

@@ -47,7 +47,7 @@ static enum status add_key(struct keys *keys, struct key_point key)
     for (size_t i = 0; i < keys->count; i++)
         if (near(keys->items[i].at, key.at, 4 * keys->fuzz))
             return STATUS_OK;
-    status = array_grow(&array, &keys->capacity, keys->count + 1, sizeof *keys->items);
+    status = mem_grow(&array, &keys->capacity, keys->count + 1, sizeof *keys->items);
     keys->items = array;
     if (status == STATUS_OK)
         keys->items[keys->count++] = key;

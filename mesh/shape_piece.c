@@ -31,7 +31,7 @@ static enum status add_mark(struct pieces *pieces, size_t *count, double mark)
 {
     void *array = pieces->marks;
     enum status status =
-        array_grow(&array, &pieces->mark_capacity, *count + 1, sizeof *pieces->marks);
+        mem_grow(&array, &pieces->mark_capacity, *count + 1, sizeof *pieces->marks);
 
     pieces->marks = array;
     if (status == STATUS_OK)
@@ -43,7 +43,7 @@ static enum status add_piece(struct pieces *pieces, double from, double to)
 {
     void *array = pieces->items;
     enum status status =
-        array_grow(&array, &pieces->capacity, pieces->count + 1, sizeof *pieces->items);
+        mem_grow(&array, &pieces->capacity, pieces->count + 1, sizeof *pieces->items);
 
     pieces->items = array;
     if (status == STATUS_OK)

@@ -55,8 +55,8 @@ static enum status cross_edge(struct scan *scan, struct edge edge, bool is_cut,
     if (scan->axis == 1)
         edge = edge_transposed(&edge);
     n = edge_rises(&edge, rises);
-    status = array_grow(&array, &list->capacity, list->count + RISES_MAX,
-                        sizeof *list->items);
+    status =
+        mem_grow(&array, &list->capacity, list->count + RISES_MAX, sizeof *list->items);
     list->items = array;
     if (status != STATUS_OK)
         return status;
@@ -93,7 +93,7 @@ static enum status add_span(struct scan *scan, const struct crossing *from,
         return STATUS_OK;
     if (span.low > span.high) /* gone before it reaches the line */
         span = (struct span){from->shifted, to->shifted};
-    status = array_grow(&array, &scan->capacity, scan->count + 1, sizeof *scan->spans);
+    status = mem_grow(&array, &scan->capacity, scan->count + 1, sizeof *scan->spans);
     scan->spans = array;
     if (status == STATUS_OK)
         scan->spans[scan->count++] = span;

@@ -73,8 +73,8 @@ static enum status add_point(struct sampler *sampler, struct surface_point point
     enum status status;
 
     point.corner_distance = corner_distance(sampler, point.at);
-    status = array_grow(&array, &sampler->capacity, sampler->count + 1,
-                        sizeof *sampler->items);
+    status = mem_grow(&array, &sampler->capacity, sampler->count + 1,
+                      sizeof *sampler->items);
     sampler->items = array;
     if (status == STATUS_OK)
         sampler->items[sampler->count++] = point;

@@ -30,6 +30,21 @@ void *mem_resize(void *array, size_t n, size_t size)
     return realloc(array, bytes > 0 ? bytes : 1);
 }
 
+enum status mem_grow(void **array, size_t *capacity, size_t need, size_t size)
+{
+    if (need <= *capacity)
+        return STATUS_OK;
+    size_t n = *capacity < 8 ? 16 : 2 * *capacity;
+    if (n < need)
+        n = need;
+    void *grown = mem_resize(*array, n, size);
+    if (grown == NULL)
+        return STATUS_MEMORY;
+    *array = grown;
+    *capacity = n;
+    return STATUS_OK;
+}
+
 char *mem_text(const char *text)
 {
     if (text == NULL)

@@ -8,6 +8,9 @@
 
 #include <stddef.h>
 
+#include "shared/attributes.h"
+#include "shared/status.h"
+
 /** Zeroed array of n items of `size` bytes; NULL if it does not fit or n*size
  *  overflows. n = 0 gives a valid pointer to free. */
 void *mem_new(size_t n, size_t size);
@@ -15,6 +18,11 @@ void *mem_new(size_t n, size_t size);
 /** Array resized to n items of `size` bytes; NULL (old array untouched) on failure.
  *  New items are not initialised. */
 void *mem_resize(void *array, size_t n, size_t size);
+
+/** Room for at least `need` items of `size` bytes in *array, which may move; *capacity
+ *  grows at least twofold when it grows. STATUS_MEMORY leaves both as they are. */
+enum status mem_grow(void **array, size_t *capacity, size_t need,
+                     size_t size) MUST_CHECK;
 
 /** Copy of a string; NULL if text is NULL or memory ran out. */
 char *mem_text(const char *text);

@@ -29,7 +29,7 @@ struct field {
     int *fit_of;           /* [nb*na] index into fits, -1 not made yet */
     struct harmonic *fits; /* [fit_count] */
     int fit_count;
-    int fit_capacity;
+    size_t fit_capacity;
     double *work;       /* scratch of harmonic_fit */
     struct span *spans; /* scratch of line_is_clear */
     size_t span_capacity;
@@ -162,15 +162,11 @@ static void view_collect(struct view *view)
 
 static enum status fits_grow(struct field *field)
 {
-    if (field->fit_count < field->fit_capacity)
-        return STATUS_OK;
-    int capacity = 2 * field->fit_capacity + 256;
-    struct harmonic *grown = mem_resize(field->fits, (size_t)capacity, sizeof *grown);
-    if (grown == NULL)
-        return STATUS_MEMORY;
-    field->fits = grown;
-    field->fit_capacity = capacity;
-    return STATUS_OK;
+    void *array = field->fits;
+    enum status status = mem_grow(&array, &field->fit_capacity,
+                                  (size_t)field->fit_count + 1, sizeof *field->fits);
+    field->fits = array;
+    return status;
 }
 
 /* The fit of a node, made when first asked for. */

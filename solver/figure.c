@@ -7,15 +7,11 @@
 
 static enum status grow(struct figures *figures)
 {
-    if (figures->count < figures->capacity)
-        return STATUS_OK;
-    size_t capacity = 2 * figures->capacity + 32;
-    struct figure *grown = mem_resize(figures->items, capacity, sizeof *grown);
-    if (grown == NULL)
-        return STATUS_MEMORY;
-    figures->items = grown;
-    figures->capacity = capacity;
-    return STATUS_OK;
+    void *array = figures->items;
+    enum status status = mem_grow(&array, &figures->capacity, figures->count + 1,
+                                  sizeof *figures->items);
+    figures->items = array;
+    return status;
 }
 
 enum status figures_add(struct figures *figures, const struct figure *figure,

@@ -13,8 +13,6 @@
 
 enum { CIRCLE_POINTS = 48, RADIUS_STEPS = 40, NOTE_SIZE = 240 };
 
-#define BOUND_DEFAULT 1e-3
-
 static const char *const NEEDS_BOTH =
     "needs one electric and one magnetic plane (across, or along as a substitute)";
 
@@ -155,8 +153,7 @@ static void add_circle(struct maker *maker, const struct view *view,
                        const struct section_source *source)
 {
     const struct geometry *g = view->geometry;
-    const struct limit *limit = &g->limits[LIMIT_RATIO_ERROR];
-    const double bound = limit->present ? limit->value : BOUND_DEFAULT;
+    const double bound = geometry_ratio_bound(g);
     const struct figure_key key = {"even_radius", "largest even circle", "m", 0.0};
     struct even_circle circle = {0.0, false};
     char note[NOTE_SIZE];

@@ -11,8 +11,6 @@
 
 enum { NOTE_SIZE = 160 };
 
-#define BOUND_DEFAULT 1e-3 /* ratio error of the flat length where no limit is given */
-
 static const char *const NEEDS_BOTH = "needs both electric_along and magnetic_along";
 static const char *const NEEDS_PARTICLE =
     "needs the mass, charge and energy (or speed) of the beam";
@@ -141,8 +139,7 @@ enum status figures_along(const struct view *view, const struct path *path,
     struct maker maker = {figures, FIGURE_ALONG, 0, STATUS_OK};
     struct ratio_summary summary = {0};
     const bool both = ratio_is_available(path);
-    const struct limit *limit = &g->limits[LIMIT_RATIO_ERROR];
-    const double bound = limit->present ? limit->value : BOUND_DEFAULT;
+    const double bound = geometry_ratio_bound(g);
     if (both)
         ratio_summarise(path, g->reference_z, bound, &summary);
     add_centre(&maker, path);
