@@ -4,6 +4,7 @@
 #include "mesh/geometry.h"
 
 #include <assert.h>
+#include <math.h>
 
 #include "shared/mem.h"
 
@@ -97,6 +98,21 @@ bool geometry_probe_counts(const struct geometry *geometry, const struct probe *
                        geometry->planes[PLANE_MAGNETIC_ALONG].present;
     return plane_kind_is_along(kind) || !along || !probe->has_z ||
            probe->z == geometry->reference_z;
+}
+
+bool plane_touches_wall(const struct plane *plane, const struct part *part)
+{
+    struct vec2 low, high;
+    shape_bounds(&part->shape, &low, &high);
+    const double slack =
+        1e-9 * fmin(plane->high.a - plane->low.a, plane->high.b - plane->low.b);
+    const bool at[SIDE_COUNT] = {
+        low.a <= plane->low.a + slack, high.a >= plane->high.a - slack,
+        low.b <= plane->low.b + slack, high.b >= plane->high.b - slack};
+    for (int s = 0; s < SIDE_COUNT; s++)
+        if (at[s] && plane->sides[s].kind == SIDE_WALL)
+            return true;
+    return false;
 }
 
 double geometry_ratio_bound(const struct geometry *geometry)

@@ -186,6 +186,10 @@ const struct limit_rule *geometry_limit_rule(enum limit_kind kind);
  *  a gain array that is NULL counts as zeros. */
 bool linear_equal(const struct linear *p, const struct linear *q, size_t supply_count);
 
+/** True if a part touches a wall of its plane: it is one conductor with that wall and has
+ *  no capacitance of its own. */
+bool plane_touches_wall(const struct plane *plane, const struct part *part);
+
 /** True if a probe that names no plane is read in planes of this kind: always in planes
  *  along the beam; in planes across it, which stand for the reference z, if it stands
  *  there, gives no z, or no plane along the beam knows z. */

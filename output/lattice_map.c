@@ -53,8 +53,8 @@ static void write_vectors(struct sink *sink, const char *name, double *const fie
 {
     sink_print(sink, "VECTORS %s double\n", name);
     for (size_t k = 0; k < count; k++)
-        sink_print(sink, "%.12g %.12g %.12g\n", tidy(field[0][k]), tidy(field[1][k]),
-                   tidy(field[2][k]));
+        for (int c = 0; c < 3; c++)
+            sink_number(sink, tidy(field[c][k]), c < 2 ? ' ' : '\n');
 }
 
 static double vtk_spacing(const struct lattice_field *lattice, enum axis axis)
@@ -134,13 +134,11 @@ static double coordinate(const struct lattice_field *lattice, int axis, int k)
 static void write_csv_row(struct sink *sink, const struct lattice_field *lattice,
                           size_t k)
 {
-    if (lattice->has_electric)
-        sink_print(sink, ",%.12g,%.12g,%.12g", tidy(lattice->e[0][k]),
-                   tidy(lattice->e[1][k]), tidy(lattice->e[2][k]));
-    if (lattice->has_magnetic)
-        sink_print(sink, ",%.12g,%.12g,%.12g", tidy(lattice->b[0][k]),
-                   tidy(lattice->b[1][k]), tidy(lattice->b[2][k]));
-    sink_print(sink, ",%d\n", lattice->solid[k]);
+    for (int c = 0; c < 3 && lattice->has_electric; c++)
+        sink_number(sink, tidy(lattice->e[c][k]), ',');
+    for (int c = 0; c < 3 && lattice->has_magnetic; c++)
+        sink_number(sink, tidy(lattice->b[c][k]), ',');
+    sink_bytes(sink, lattice->solid[k] ? "1\n" : "0\n", 2);
 }
 
 enum status lattice_map_write_csv(struct sink *sink,
@@ -155,9 +153,9 @@ enum status lattice_map_write_csv(struct sink *sink,
     for (int iz = 0; iz < lattice->n[AXIS_Z]; iz++) {
         for (int iy = 0; iy < lattice->n[AXIS_Y]; iy++) {
             for (int ix = 0; ix < lattice->n[AXIS_X]; ix++) {
-                sink_print(sink, "%.12g,%.12g,%.12g", coordinate(lattice, AXIS_X, ix),
-                           coordinate(lattice, AXIS_Y, iy),
-                           coordinate(lattice, AXIS_Z, iz));
+                sink_number(sink, coordinate(lattice, AXIS_X, ix), ',');
+                sink_number(sink, coordinate(lattice, AXIS_Y, iy), ',');
+                sink_number(sink, coordinate(lattice, AXIS_Z, iz), ',');
                 write_csv_row(sink, lattice, k++);
             }
         }

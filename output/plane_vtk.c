@@ -60,7 +60,7 @@ static void write_scalars(struct sink *sink, const struct plane_result *plane,
 {
     sink_print(sink, "SCALARS potential double 1\nLOOKUP_TABLE default\n");
     for (size_t k = 0; k < count; k++)
-        sink_print(sink, "%.12g\n", tidy(plane->potential[k]));
+        sink_number(sink, tidy(plane->potential[k]), '\n');
     sink_print(sink, "SCALARS part int 1\nLOOKUP_TABLE default\n");
     for (size_t k = 0; k < count; k++)
         sink_print(sink, "%d\n", plane->grid.owner[k]);
@@ -84,8 +84,10 @@ enum status plane_vtk_write(struct sink *sink, enum plane_kind kind,
     sink_print(sink, "VECTORS %s double\n",
                plane_kind_is_magnetic(kind) ? "magnetic_flux_density"
                                             : "electric_field");
-    for (size_t k = 0; k < count; k++)
-        sink_print(sink, "%.12g %.12g 0\n", tidy(plane->field_a[k]),
-                   tidy(plane->field_b[k]));
+    for (size_t k = 0; k < count; k++) {
+        sink_number(sink, tidy(plane->field_a[k]), ' ');
+        sink_number(sink, tidy(plane->field_b[k]), ' ');
+        sink_bytes(sink, "0\n", 2);
+    }
     return STATUS_OK;
 }

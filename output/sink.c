@@ -11,6 +11,7 @@
 #include <string.h>
 #include <unistd.h>
 
+#include "output/digits.h"
 #include "output/interrupt.h"
 #include "shared/mem.h"
 
@@ -65,6 +66,14 @@ void sink_print(struct sink *sink, const char *format, ...)
     if (vfprintf(sink->file, format, arguments) < 0)
         note_failure(sink);
     va_end(arguments);
+}
+
+void sink_number(struct sink *sink, double value, char after)
+{
+    char text[DIGITS_TEXT + 1];
+    size_t length = digits_write(value, text);
+    text[length++] = after;
+    sink_bytes(sink, text, length);
 }
 
 void sink_bytes(struct sink *sink, const void *bytes, size_t length)

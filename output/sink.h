@@ -29,6 +29,9 @@ enum status sink_open(struct sink *sink, const char *path,
 /** Prints; after a failure nothing is written any more. */
 void sink_print(struct sink *sink, const char *format, ...) PRINTF_LIKE(2, 3);
 
+/** Prints a number as %.12g would, and then one character; fast (digits.h). */
+void sink_number(struct sink *sink, double value, char after);
+
 /** Writes length bytes. */
 void sink_bytes(struct sink *sink, const void *bytes, size_t length);
 

@@ -62,23 +62,6 @@ static void surface_note(const struct surface_peak *peak, const struct plane *pl
                    axis_key(plane_kind_axis(plane->kind, 1)), peak->at.b * 1e3, corner);
 }
 
-/* A part that touches a wall of the region is one conductor with it and has no
- * capacitance of its own. */
-static bool touches_wall(const struct plane *plane, const struct part *part)
-{
-    struct vec2 low, high;
-    shape_bounds(&part->shape, &low, &high);
-    const double slack =
-        1e-9 * fmin(plane->high.a - plane->low.a, plane->high.b - plane->low.b);
-    const bool at[SIDE_COUNT] = {
-        low.a <= plane->low.a + slack, high.a >= plane->high.a - slack,
-        low.b <= plane->low.b + slack, high.b >= plane->high.b - slack};
-    for (int s = 0; s < SIDE_COUNT; s++)
-        if (at[s] && plane->sides[s].kind == SIDE_WALL)
-            return true;
-    return false;
-}
-
 static void add_surface(struct maker *maker, const struct plane_solution *plane,
                         size_t part)
 {
@@ -118,7 +101,7 @@ static void add_electric(struct maker *maker, const struct plane_solution *plane
             (struct figure_key){"capacitance", "capacitance per metre", "F/m", 0.0},
             VACUUM_PERMITTIVITY * plane->self_flux[p], name,
             "to everything else, earthed",
-            touches_wall(plane->plane, &plane->plane->parts[p])
+            plane_touches_wall(plane->plane, &plane->plane->parts[p])
                 ? "the part touches a wall of the region"
                 : NULL);
         add_surface(maker, plane, p);

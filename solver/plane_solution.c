@@ -102,28 +102,35 @@ static enum status solve_column(struct plane_solution *s, const struct system *s
     return STATUS_OK;
 }
 
-/* Flux out of every part held at 1 with everything else at 0. */
+/* Flux out of part p held at 1 with everything else at 0. */
+static enum status solve_one_self(struct plane_solution *s, const struct system *system,
+                                  size_t p, struct drive *drive, double *phi,
+                                  double *flux)
+{
+    double side[SIDE_COUNT], imbalance;
+    for (size_t q = 0; q < s->plane->part_count; q++)
+        drive->part[q] = q == p ? 1.0 : 0.0;
+    enum status status = system_solve(system, drive, phi, NULL);
+    if (status == STATUS_OK)
+        status = flux_measure(&s->grid, phi, flux, side, &imbalance);
+    s->self_flux[p] = flux[p];
+    return status;
+}
+
 static enum status solve_self(struct plane_solution *s, const struct system *system,
                               struct drive *drive)
 {
     const size_t nodes = (size_t)s->grid.na * (size_t)s->grid.nb;
     const size_t parts = s->plane->part_count;
     double *phi = MEM_NEW(nodes, double), *flux = MEM_NEW(parts, double);
-    double side[SIDE_COUNT], imbalance;
     s->self_flux = MEM_NEW(parts, double);
     enum status status =
         phi != NULL && flux != NULL && s->self_flux != NULL ? STATUS_OK : STATUS_MEMORY;
     for (int k = 0; k < SIDE_COUNT; k++)
         drive->side_from[k] = drive->side_to[k] = 0.0;
-    for (size_t p = 0; p < parts && status == STATUS_OK; p++) {
-        for (size_t q = 0; q < parts; q++)
-            drive->part[q] = q == p ? 1.0 : 0.0;
-        status = system_solve(system, drive, phi, NULL);
-        if (status == STATUS_OK)
-            status = flux_measure(&s->grid, phi, flux, side, &imbalance);
-        if (status == STATUS_OK)
-            s->self_flux[p] = flux[p];
-    }
+    for (size_t p = 0; p < parts && status == STATUS_OK; p++)
+        if (!plane_touches_wall(s->plane, &s->plane->parts[p]))
+            status = solve_one_self(s, system, p, drive, phi, flux);
     mem_free(phi);
     mem_free(flux);
     return status;

@@ -27,8 +27,9 @@ struct plane_solution {
     double *part_value; /* [part_count] potential of every part at the settings */
     double *part_flux;  /* [part_count] outward flux of -grad phi at the settings */
     double side_flux[SIDE_COUNT];
-    double *self_flux; /* [part_count] flux out of a part at 1 with all else at 0;
-                             electric planes only, else NULL */
+    double *self_flux; /* [part_count] flux out of a part at 1 with all else at 0,
+                             0 for parts that touch a wall; electric planes only, else
+                             NULL */
     struct field *field;
 };
 
