@@ -40,6 +40,10 @@ enum status plane_solve(const struct geometry *geometry, enum plane_kind kind,
                         double fineness, int level, struct plane_solution *solution,
                         struct messages *messages) MUST_CHECK;
 
+/** True if residual, reciprocal condition and flux balance are those of a sound solve; NaN
+ *  is never trusted. */
+bool quality_is_trusted(const struct quality *quality);
+
 /** E (V/m) or B (T) along (a, b) at a point; part (may be NULL) as field_at. */
 enum status plane_field(const struct plane_solution *solution, struct vec2 at,
                         double field[2], int *part) MUST_CHECK;
