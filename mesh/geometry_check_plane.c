@@ -8,6 +8,7 @@
 #include "mesh/geometry_check_internal.h"
 #include "shared/mem.h"
 
+#define THICKNESS_MIN  1e-7  /* of the smaller side of the region */
 #define SAME_POTENTIAL 1e-12 /* relative: rounding of the arithmetic in the file */
 #define SIZE_MIN       1e-6  /* m, side of a region */
 #define SIZE_MAX_SIDE  1e3   /* m */
@@ -193,11 +194,29 @@ static void check_side(struct check *check, const struct plane *plane, int s,
         report_side(check, plane, s, part);
 }
 
+/* Solid thinner than the accuracy of the grid's surfaces could slip through it. */
+static bool check_thickness(struct check *check, const struct plane *plane,
+                            const struct part *part)
+{
+    struct vec2 low, high;
+    shape_bounds(&part->shape, &low, &high);
+    const double size = fmin(high.a - low.a, high.b - low.b);
+    const double region =
+        fmin(plane->high.a - plane->low.a, plane->high.b - plane->low.b);
+    return size >= THICKNESS_MIN * region ||
+           mistakes_add(&check->mistakes, part->place,
+                        "the part \"%.60s\" of \"%s\" is too thin for its region; "
+                        "expected at least %g mm; found %g mm",
+                        part->name, plane_kind_key(plane->kind),
+                        THICKNESS_MIN * region * 1e3, size * 1e3);
+}
+
 static void check_parts(struct check *check, const struct plane *plane)
 {
     for (size_t k = 0; k < plane->part_count && !check->out_of_memory; k++) {
         const struct part *part = &plane->parts[k];
-        bool inside = check_inside(check, plane, part);
+        bool inside =
+            check_inside(check, plane, part) && check_thickness(check, plane, part);
         for (int s = 0; inside && s < SIDE_COUNT; s++)
             check_side(check, plane, s, part);
         for (size_t j = 0; j < k && !check->out_of_memory; j++)

@@ -28,11 +28,23 @@ static bool is_part_figure(const struct figure *figure)
            named(figure, "surface_field") || named(figure, "flux");
 }
 
+/* Coefficients and fit errors of Enge functions. */
+static bool is_enge(const struct figure *figure)
+{
+    return strncmp(figure->name, "enge_", strlen("enge_")) == 0;
+}
+
+/* Coefficients are missing with their function, or left out of it. */
+static bool is_enge_term(const struct figure *figure)
+{
+    return is_enge(figure) && figure->subject;
+}
+
 /* Figures with a line of their own. */
 static bool is_line(const struct figure *figure)
 {
     return figure->state != FIGURE_MISSING && !is_expansion(figure) &&
-           !is_part_figure(figure);
+           !is_part_figure(figure) && !is_enge(figure);
 }
 
 static void value_text(const struct figure *figure, char *text, size_t size)
@@ -123,6 +135,69 @@ static void write_expansions(struct sink *sink, const struct figures *figures)
         (void)write_term(sink, figures, n, true);
 }
 
+/* The ends of the fields, a column each. */
+static const struct {
+    const char *title, *error, *term;
+} ENGE_COLUMNS[] = {
+    {"E_x, entrance", "enge_error_electric_entrance", "enge_electric_entrance"},
+    {"E_x, exit", "enge_error_electric_exit", "enge_electric_exit"},
+    {"B_y, entrance", "enge_error_magnetic_entrance", "enge_magnetic_entrance"},
+    {"B_y, exit", "enge_error_magnetic_exit", "enge_magnetic_exit"},
+};
+enum { ENGE_COLUMN_COUNT = sizeof ENGE_COLUMNS / sizeof *ENGE_COLUMNS };
+
+/* A row of the table: coefficients of one name, or the errors (NULL). */
+static void write_enge_row(struct sink *sink, const struct figures *figures,
+                           const char *subject)
+{
+    sink_print(sink, "    %-7s", subject ? subject : "error");
+    for (int k = 0; k < ENGE_COLUMN_COUNT; k++) {
+        const struct figure *f = figures_find(
+            figures, subject ? ENGE_COLUMNS[k].term : ENGE_COLUMNS[k].error, subject);
+        char text[NUMBER_TEXT] = "-";
+        if (f && f->state == FIGURE_GOOD)
+            number_quantity(f->value, f->uncertainty, f->unit, text, sizeof text);
+        else if (f && f->state == FIGURE_UNSETTLED)
+            (void)snprintf(text, sizeof text, "unsettled");
+        sink_print(sink, "  %-*s", k + 1 < ENGE_COLUMN_COUNT ? TERM_COLUMN : 0, text);
+    }
+    sink_print(sink, "\n");
+}
+
+static void write_enge_notes(struct sink *sink, const struct figures *figures)
+{
+    char text[SHEET_TEXT];
+    for (int k = 0; k < ENGE_COLUMN_COUNT; k++) {
+        const struct figure *f = figures_find(figures, ENGE_COLUMNS[k].error, NULL);
+        if (!f || f->state == FIGURE_MISSING || !f->note)
+            continue;
+        (void)snprintf(text, sizeof text, "%s: %s", ENGE_COLUMNS[k].title, f->note);
+        sheet_wrap(sink, SHEET_NOTE_INDENT, text);
+    }
+}
+
+static void write_enge(struct sink *sink, const struct figures *figures)
+{
+    static const char *const subjects[] = {"a0", "a1", "a2", "a3", "a4", "a5"};
+    bool any = false;
+    for (int k = 0; k < ENGE_COLUMN_COUNT; k++) {
+        const struct figure *f = figures_find(figures, ENGE_COLUMNS[k].error, NULL);
+        any = any || (f && f->state != FIGURE_MISSING);
+    }
+    if (!any)
+        return;
+    sink_print(sink, "  Enge functions, field/centre = 1/(1 + exp(a0 + a1 s + ... + a5 "
+                     "s^5))\n           ");
+    for (int k = 0; k < ENGE_COLUMN_COUNT; k++)
+        sink_print(sink, "  %-*s", k + 1 < ENGE_COLUMN_COUNT ? TERM_COLUMN : 0,
+                   ENGE_COLUMNS[k].title);
+    sink_print(sink, "\n");
+    for (size_t k = 0; k < sizeof subjects / sizeof *subjects; k++)
+        write_enge_row(sink, figures, subjects[k]);
+    write_enge_row(sink, figures, NULL);
+    write_enge_notes(sink, figures);
+}
+
 static bool same_part(const struct figure *p, const struct figure *q)
 {
     return p->planes == q->planes && p->subject && q->subject &&
@@ -204,6 +279,7 @@ static void write_parts(struct sink *sink, const struct figures *figures)
 static bool same_reason(const struct figure *p, const struct figure *q)
 {
     return p->group == q->group && q->state == FIGURE_MISSING && !is_part_figure(q) &&
+           !is_enge_term(q) &&
            strcmp(p->note ? p->note : "", q->note ? q->note : "") == 0;
 }
 
@@ -244,6 +320,8 @@ static void write_group(struct sink *sink, const struct figures *figures,
         if (is_line(&figures->items[k]))
             write_line(sink, &figures->items[k]);
     }
+    if (group == FIGURE_ALONG)
+        write_enge(sink, figures);
     if (group == FIGURE_ACROSS)
         write_expansions(sink, figures);
     if (group == FIGURE_HARDWARE)
@@ -251,7 +329,7 @@ static void write_group(struct sink *sink, const struct figures *figures,
     for (size_t k = 0; k < figures->count; k++)
         if (figures->items[k].group == group &&
             figures->items[k].state == FIGURE_MISSING &&
-            !is_part_figure(&figures->items[k]))
+            !is_part_figure(&figures->items[k]) && !is_enge_term(&figures->items[k]))
             write_missing(sink, figures, k);
 }
 

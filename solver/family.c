@@ -8,12 +8,14 @@
 
 enum { NOTE_SIZE = 400 };
 
-static bool missing_somewhere(const struct figures *levels, int count, size_t k)
+/* The finest level on which the figure is missing; NULL if it is there on all. */
+static const struct figure *missing_on(const struct figures *levels, int count,
+                                       size_t k)
 {
-    for (int l = 0; l < count; l++)
+    for (int l = count - 1; l >= 0; l--)
         if (levels[l].items[k].state == FIGURE_MISSING)
-            return true;
-    return false;
+            return &levels[l].items[k];
+    return NULL;
 }
 
 /* Says what the grids gave where they do not converge. */
@@ -36,10 +38,11 @@ static enum status combine_one(const struct figures *levels, int count, size_t k
     struct figure figure = *finest;
     double values[3];
     char note[NOTE_SIZE];
-    if (missing_somewhere(levels, count, k)) {
+    const struct figure *missing = missing_on(levels, count, k);
+    if (missing != NULL) {
         figure.state = FIGURE_MISSING;
         figure.value = 0.0;
-        return figures_add(combined, &figure, finest->subject, finest->note);
+        return figures_add(combined, &figure, missing->subject, missing->note);
     }
     for (int l = 0; l < count; l++)
         values[l] = levels[l].items[k].value;

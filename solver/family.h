@@ -10,7 +10,7 @@
 
 /** Combines the lists of levels[count] (coarse to fine, 2 or 3, same names in the same
  *  order) into one with extrapolated values and uncertainties. A figure missing on any
- *  level is missing; notes are those of the finest level. */
+ *  level is missing, with that level's note; other notes are those of the finest level. */
 enum status family_figures(const struct figures *levels, int count,
                            struct figures *combined) MUST_CHECK;
 

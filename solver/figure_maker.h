@@ -49,6 +49,10 @@ enum status figures_along(const struct view *view, const struct path *path,
 enum status figures_fringe(const struct view *view, const struct path *path,
                            struct figures *figures) MUST_CHECK;
 
+/** Enge functions of the ends of each field (figures_enge.c). */
+enum status figures_enge(const struct view *view, const struct path *path,
+                         struct figures *figures) MUST_CHECK;
+
 /** Motion of the wanted particle (figures_motion.c). */
 enum status figures_motion(const struct view *view, const struct path *path,
                            struct figures *figures) MUST_CHECK;

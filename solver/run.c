@@ -89,6 +89,8 @@ static enum status figures_of_level(struct run *run, int level)
     if (status == STATUS_OK)
         status = figures_fringe(view, path, figures);
     if (status == STATUS_OK)
+        status = figures_enge(view, path, figures);
+    if (status == STATUS_OK)
         status = figures_motion(view, path, figures);
     if (status == STATUS_OK)
         status = figures_across(view, figures);

@@ -136,6 +136,14 @@ static void test_parts_outside_the_region_are_located(void **state)
                    9, "\"far\" lies outside", "z 211 mm");
 }
 
+static void test_part_too_thin_for_the_grid_is_refused(void **state)
+{
+    (void)state;
+    assert_mistake(PLANE PLATES
+                   "      foil: {guard: 9 V, box: {z: [0, 10 mm], x: [0, 1e-6 mm]}}\n",
+                   9, "\"foil\" of \"electric_along\" is too thin", "at least");
+}
+
 static void test_part_on_a_wall_needs_its_potential(void **state)
 {
     (void)state;
@@ -446,6 +454,7 @@ int main(void)
         cmocka_unit_test(test_parts_with_a_gap_are_fine),
         cmocka_unit_test(test_part_in_a_hole_of_another_is_fine),
         cmocka_unit_test(test_parts_outside_the_region_are_located),
+        cmocka_unit_test(test_part_too_thin_for_the_grid_is_refused),
         cmocka_unit_test(test_part_on_a_wall_needs_its_potential),
         cmocka_unit_test(test_part_on_a_running_wall_is_compared_where_it_touches),
         cmocka_unit_test(test_part_on_an_antimirror_must_be_at_zero),

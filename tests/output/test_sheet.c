@@ -4,6 +4,7 @@
 #include <string.h>
 
 #include "output/sheet.h"
+#include "output/sheet_figures.h"
 #include "output/words.h"
 #include "tests/output/fixture.h"
 #include "tests/support/assert_close.h"
@@ -80,6 +81,49 @@ static void test_all_cautions_are_printed(void **state)
     free(text);
 }
 
+static void add(struct figures *figures, const char *name, enum figure_state state,
+                const char *subject, const char *note)
+{
+    const struct figure figure = {.name = name,
+                                  .title = name,
+                                  .unit = "1",
+                                  .group = FIGURE_ALONG,
+                                  .state = state,
+                                  .planes = 1,
+                                  .value = state == FIGURE_MISSING ? 0 : 3.917284,
+                                  .uncertainty = state == FIGURE_MISSING ? 0 : 2e-5};
+    assert_int_equal(figures_add(figures, &figure, subject, note), STATUS_OK);
+}
+
+/* A table with the ends that there are; what is left out is a dash, what is missing as
+ * a whole is told once, by its error. */
+static void test_enge_functions_make_one_table(void **state)
+{
+    (void)state;
+    struct figures figures = {0};
+    struct capture capture;
+    add(&figures, "enge_error_electric_exit", FIGURE_GOOD, NULL, "range and zero");
+    add(&figures, "enge_electric_exit", FIGURE_GOOD, "a1", NULL);
+    add(&figures, "enge_electric_exit", FIGURE_UNSETTLED, "a3", "grids");
+    add(&figures, "enge_electric_exit", FIGURE_MISSING, "a5", "left out");
+    add(&figures, "enge_error_magnetic_exit", FIGURE_MISSING, NULL, "no plane");
+    add(&figures, "enge_magnetic_exit", FIGURE_MISSING, "a1", "no plane");
+    capture_open(&capture);
+    sheet_figures(&capture.sink, &figures);
+    capture_close(&capture);
+    assert_non_null(strstr(capture.text, "    a1       -                 3.91728(2) "));
+    assert_non_null(strstr(capture.text, "    a3       -                 unsettled "));
+    assert_non_null(strstr(capture.text, "    a5       -                 -  "));
+    assert_non_null(strstr(capture.text, "    error    -                 3.91728(2) "));
+    assert_non_null(strstr(capture.text, "E_x, exit: range and zero"));
+    const char *missing = strstr(capture.text, "missing: no plane\n");
+    assert_non_null(missing);
+    assert_non_null(strstr(missing, "enge_error_magnetic_exit\n"));
+    assert_null(strstr(missing, "a1"));
+    free(capture.text);
+    figures_free(&figures);
+}
+
 static void test_verdict_words_cover_all_cases(void **state)
 {
     (void)state;
@@ -105,6 +149,7 @@ int main(void)
         cmocka_unit_test(test_lines_stay_within_88_columns),
         cmocka_unit_test(test_absent_plane_is_named_and_claims_nothing),
         cmocka_unit_test(test_all_cautions_are_printed),
+        cmocka_unit_test(test_enge_functions_make_one_table),
         cmocka_unit_test(test_verdict_words_cover_all_cases),
     };
     return cmocka_run_group_tests(tests, fixture_setup, fixture_teardown);
