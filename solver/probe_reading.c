@@ -1,6 +1,8 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later */
 #include "solver/probe_reading.h"
 
+#include <math.h>
+
 #include "shared/mem.h"
 #include "solver/extrapolate.h"
 
@@ -43,9 +45,11 @@ static enum status read_one(const struct view *views, int count,
     reading->potential_err = p.uncertainty;
     const struct estimate e[2] = {extrapolate(a, count, 0.0),
                                   extrapolate(b, count, 0.0)};
+    /* A component small beside the other is judged with it: its own grids say too little
+     * of an error that turns the vector. */
     for (int k = 0; k < 2; k++) {
         reading->field[k] = e[k].value;
-        reading->field_err[k] = e[k].uncertainty;
+        reading->field_err[k] = fmax(e[0].uncertainty, e[1].uncertainty);
     }
     return STATUS_OK;
 }

@@ -39,7 +39,8 @@ static void midplane_field(const struct geometry *g, enum plane_kind kind,
 }
 
 /* Half of a gap above its mid plane; a conductor ends at a = 0. The far sides are
- * mirrors: far out the potential depends on the angle only, so no flux crosses them. */
+ * mirrors: far out the potential depends nearly on the angle only, so hardly any flux
+ * crosses them. What is left falls with the square of the reach for the thin plate. */
 static struct plane *half_gap(struct geometry *g, enum plane_kind kind, double reach)
 {
     struct plane *plane = scene_plane(g, kind, -reach, reach, 0.0, reach);
