@@ -114,12 +114,6 @@ struct verdict {
     bool all_met; /* true also when there are no limits */
 };
 
-/* Time and memory per stage, for the benchmark. */
-struct stage_cost {
-    const char *stage;
-    double seconds;
-};
-
 struct result {
     const struct geometry *geometry; /* borrowed */
     struct plane_result planes[PLANE_KINDS];

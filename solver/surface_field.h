@@ -20,7 +20,8 @@ struct surface_peak {
 
 /** Peak over the part's surface inside the region. The points looked at do not depend on
  *  the grid.
- *  Order  2 on flat and round surfaces. */
+ *  Order  2 on flat faces; 1.8 measured on a round one (coaxial core, four grids). The
+ *         highest of the points looked at falls short of the true peak by about 2e-5. */
 enum status surface_field_peak(const struct plane_solution *plane, size_t part,
                                struct surface_peak *peak) MUST_CHECK;
 
