@@ -26,7 +26,8 @@ static enum status narrow(const struct part *part, int axis, double line, double
 static bool reflects(const struct plane *plane, enum side_index side, double edge,
                      double x, double slack)
 {
-    return plane->sides[side].kind != SIDE_WALL && fabs(x - edge) <= slack;
+    const enum side_kind kind = plane->sides[side].kind;
+    return (kind == SIDE_MIRROR || kind == SIDE_ANTIMIRROR) && fabs(x - edge) <= slack;
 }
 
 enum status gap_at(const struct plane *plane, int axis, struct vec2 at, double *below,
@@ -40,8 +41,9 @@ enum status gap_at(const struct plane *plane, int axis, struct vec2 at, double *
     *below = -(double)INFINITY;
     *above = (double)INFINITY;
     for (size_t p = 0; p < plane->part_count && status == STATUS_OK; p++)
-        status =
-            narrow(&plane->parts[p], axis, line, x, 1e-11 * (high - low), below, above);
+        if (part_is_conductor(&plane->parts[p]))
+            status = narrow(&plane->parts[p], axis, line, x, 1e-11 * (high - low),
+                            below, above);
     const double slack = 1e-9 * (high - low);
     if (reflects(plane, second ? SIDE_B_LOW : SIDE_A_LOW, low, x, slack))
         *below = 2.0 * x - *above;

@@ -9,9 +9,9 @@
 #include "shared/attributes.h"
 #include "shared/status.h"
 
-/** Nearest part surfaces below and above the point along an axis (0: a, 1: b), as
+/** Nearest surfaces of conductors below and above the point along an axis (0: a, 1: b), as
  *  coordinates; -INFINITY and INFINITY where there is none. A symmetry side on which the
- *  point lies reflects the other surface. A part that covers the point itself gives
+ *  point lies reflects the other surface. A conductor that covers the point itself gives
  *  below = above = its coordinate. STATUS_MEMORY. */
 enum status gap_at(const struct plane *plane, int axis, struct vec2 at, double *below,
                    double *above) MUST_CHECK;

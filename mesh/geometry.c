@@ -15,6 +15,7 @@ const char *plane_kind_key(enum plane_kind kind)
         [PLANE_ELECTRIC_ACROSS] = "electric_across",
         [PLANE_MAGNETIC_ALONG] = "magnetic_along",
         [PLANE_MAGNETIC_ACROSS] = "magnetic_across",
+        [PLANE_ELECTRIC_TURNED] = "electric_turned",
     };
     assert(kind < PLANE_KINDS);
     return keys[kind];
@@ -30,6 +31,21 @@ bool plane_kind_is_along(enum plane_kind kind)
     return kind == PLANE_ELECTRIC_ALONG || kind == PLANE_MAGNETIC_ALONG;
 }
 
+bool plane_kind_is_across(enum plane_kind kind)
+{
+    return kind == PLANE_ELECTRIC_ACROSS || kind == PLANE_MAGNETIC_ACROSS;
+}
+
+bool plane_kind_is_turned(enum plane_kind kind)
+{
+    return kind == PLANE_ELECTRIC_TURNED;
+}
+
+bool part_is_conductor(const struct part *part)
+{
+    return part->kind != PART_INSULATOR;
+}
+
 enum axis plane_kind_axis(enum plane_kind kind, int which)
 {
     static const enum axis axes[PLANE_KINDS][2] = {
@@ -37,23 +53,32 @@ enum axis plane_kind_axis(enum plane_kind kind, int which)
         [PLANE_ELECTRIC_ACROSS] = {AXIS_X, AXIS_Y},
         [PLANE_MAGNETIC_ALONG] = {AXIS_Z, AXIS_Y},
         [PLANE_MAGNETIC_ACROSS] = {AXIS_X, AXIS_Y},
+        [PLANE_ELECTRIC_TURNED] = {AXIS_Z, AXIS_R},
     };
     assert(kind < PLANE_KINDS && (which == 0 || which == 1));
     return axes[kind][which];
 }
 
+struct vec2 plane_kind_project(enum plane_kind kind, double x, double y, double z)
+{
+    const double at[] = {
+        [AXIS_X] = x, [AXIS_Y] = y, [AXIS_Z] = z, [AXIS_R] = hypot(x, y)};
+    return (struct vec2){at[plane_kind_axis(kind, 0)], at[plane_kind_axis(kind, 1)]};
+}
+
 const char *axis_key(enum axis axis)
 {
-    static const char *const keys[] = {[AXIS_X] = "x", [AXIS_Y] = "y", [AXIS_Z] = "z"};
+    static const char *const keys[] = {
+        [AXIS_X] = "x", [AXIS_Y] = "y", [AXIS_Z] = "z", [AXIS_R] = "r"};
     return keys[axis];
 }
 
 const char *part_kind_key(enum part_kind kind)
 {
-    static const char *const keys[] = {[PART_ELECTRODE] = "electrode",
-                                       [PART_GUARD] = "guard",
-                                       [PART_CLAMP] = "clamp",
-                                       [PART_POLE] = "pole"};
+    static const char *const keys[] = {
+        [PART_ELECTRODE] = "electrode", [PART_GUARD] = "guard",
+        [PART_CLAMP] = "clamp",         [PART_POLE] = "pole",
+        [PART_FLOATING] = "floating",   [PART_INSULATOR] = "insulator"};
     return keys[kind];
 }
 
@@ -61,7 +86,8 @@ const char *side_kind_key(enum side_kind kind)
 {
     static const char *const keys[] = {[SIDE_WALL] = "wall",
                                        [SIDE_MIRROR] = "mirror",
-                                       [SIDE_ANTIMIRROR] = "antimirror"};
+                                       [SIDE_ANTIMIRROR] = "antimirror",
+                                       [SIDE_OPEN] = "open"};
     return keys[kind];
 }
 
@@ -96,6 +122,8 @@ bool geometry_probe_counts(const struct geometry *geometry, const struct probe *
 {
     const bool along = geometry->planes[PLANE_ELECTRIC_ALONG].present ||
                        geometry->planes[PLANE_MAGNETIC_ALONG].present;
+    if (plane_kind_is_turned(kind))
+        return probe->has_z;
     return plane_kind_is_along(kind) || !along || !probe->has_z ||
            probe->z == geometry->reference_z;
 }

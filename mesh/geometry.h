@@ -9,7 +9,8 @@
  * Axes: z along the beam, x the way the electric field points, y from pole to pole. A
  * plane has a first axis a and a second axis b:
  *     electric_along  (a, b) = (z, x)      electric_across (a, b) = (x, y)
- *     magnetic_along  (a, b) = (z, y)      magnetic_across (a, b) = (x, y) */
+ *     magnetic_along  (a, b) = (z, y)      magnetic_across (a, b) = (x, y)
+ *     electric_turned (a, b) = (z, r)      round parts about z, r >= 0 */
 
 #include <stdbool.h>
 #include <stddef.h>
@@ -17,13 +18,14 @@
 #include "mesh/shape.h"
 #include "shared/message.h"
 
-enum axis { AXIS_X, AXIS_Y, AXIS_Z };
+enum axis { AXIS_X, AXIS_Y, AXIS_Z, AXIS_R };
 
 enum plane_kind {
     PLANE_ELECTRIC_ALONG,
     PLANE_ELECTRIC_ACROSS,
     PLANE_MAGNETIC_ALONG,
     PLANE_MAGNETIC_ACROSS,
+    PLANE_ELECTRIC_TURNED,
     PLANE_KINDS
 };
 
@@ -41,22 +43,36 @@ struct supply {
     struct place place;
 };
 
-enum part_kind { PART_ELECTRODE, PART_GUARD, PART_CLAMP, PART_POLE };
+enum part_kind {
+    PART_ELECTRODE,
+    PART_GUARD,
+    PART_CLAMP,
+    PART_POLE,
+    PART_FLOATING, /* a conductor of given charge; its potential is found */
+    PART_INSULATOR /* no conductor: a medium of given permittivity */
+};
 
 struct part {
     char *name; /* unique within its plane */
     enum part_kind kind;
-    struct shape shape; /* m, in the plane's (a, b) */
-    struct linear potential;
+    struct shape shape;      /* m, in the plane's (a, b) */
+    struct linear potential; /* conductors; zero in floating parts and insulators */
+    double charge;           /* floating: C/m (planar) or C (turned), of the part inside
+                                the region: of a part that touches a mirror side, of the
+                                half drawn */
+    double permittivity;     /* insulators: relative, >= 1. Where insulators overlap the
+                                later part holds; conductors hold before insulators */
     double edge_radius; /* m: radius on which the surface field at a sharp corner is
                            stated; 0 if the file does not give one */
     struct place place;
 };
 
 enum side_kind {
-    SIDE_WALL,      /* fixed potential, running linearly from `from` to `to` */
-    SIDE_MIRROR,    /* no flux across: the potential is even */
-    SIDE_ANTIMIRROR /* zero potential, odd across */
+    SIDE_WALL,       /* fixed potential, running linearly from `from` to `to` */
+    SIDE_MIRROR,     /* no flux across: the potential is even */
+    SIDE_ANTIMIRROR, /* zero potential, odd across */
+    SIDE_OPEN        /* free space: the grid goes on in growing steps to a wall of zero
+                        potential far away */
 };
 
 /* The four sides of a region, in the order of the arrays below. */
@@ -174,10 +190,19 @@ struct geometry {
 const char *plane_kind_key(enum plane_kind kind);
 bool plane_kind_is_magnetic(enum plane_kind kind);
 bool plane_kind_is_along(enum plane_kind kind);
+bool plane_kind_is_across(enum plane_kind kind);
+bool plane_kind_is_turned(enum plane_kind kind);
 enum axis plane_kind_axis(enum plane_kind kind, int which);
 const char *axis_key(enum axis axis);
 const char *part_kind_key(enum part_kind kind);
 const char *side_kind_key(enum side_kind kind);
+
+/** The point (x, y, z) (m) as a plane of this kind sees it, in its axes (a, b); the r of
+ *  a turned plane is the distance from the axis z. */
+struct vec2 plane_kind_project(enum plane_kind kind, double x, double y, double z);
+
+/** False for insulators. */
+bool part_is_conductor(const struct part *part);
 
 /** The rule of a limit; never NULL for kind < LIMIT_KINDS. */
 const struct limit_rule *geometry_limit_rule(enum limit_kind kind);
@@ -192,7 +217,8 @@ bool plane_touches_wall(const struct plane *plane, const struct part *part);
 
 /** True if a probe that names no plane is read in planes of this kind: always in planes
  *  along the beam; in planes across it, which stand for the reference z, if it stands
- *  there, gives no z, or no plane along the beam knows z. */
+ *  there, gives no z, or no plane along the beam knows z; in turned planes if it gives
+ *  z. */
 bool geometry_probe_counts(const struct geometry *geometry, const struct probe *probe,
                            enum plane_kind kind);
 

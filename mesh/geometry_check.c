@@ -23,11 +23,14 @@ static struct interval region_interval(const struct plane *plane, int which)
                       : (struct interval){plane->low.b, plane->high.b};
 }
 
-/* Is side `end` (0 low, 1 high) of an axis a mirror or antimirror at coordinate 0? */
+/* Is side `end` (0 low, 1 high) of an axis a mirror or antimirror at coordinate 0? The
+ * axis of a turned plane is not meant: r has no other side. */
 static bool reflects_at_zero(const struct plane *plane, int which, int end)
 {
-    struct interval region = region_interval(plane, which);
-    return plane->sides[2 * which + end].kind != SIDE_WALL &&
+    const struct interval region = region_interval(plane, which);
+    const enum side_kind kind = plane->sides[2 * which + end].kind;
+    return (kind == SIDE_MIRROR || kind == SIDE_ANTIMIRROR) &&
+           plane_kind_axis(plane->kind, which) != AXIS_R &&
            fabs(end == 0 ? region.low : region.high) <= plane_tolerance(plane);
 }
 
@@ -167,7 +170,8 @@ static bool is_met(const struct geometry *geometry, unsigned need)
         return has_both(geometry, PLANE_ELECTRIC_ACROSS, PLANE_MAGNETIC_ACROSS);
     default:
         return geometry->planes[PLANE_ELECTRIC_ALONG].present ||
-               geometry->planes[PLANE_ELECTRIC_ACROSS].present;
+               geometry->planes[PLANE_ELECTRIC_ACROSS].present ||
+               geometry->planes[PLANE_ELECTRIC_TURNED].present;
     }
 }
 

@@ -10,11 +10,6 @@
 #define POINT_TEXT 80
 #define THIN       1e-9 /* half width of a path without a footprint, of the region */
 
-static double coordinate(enum axis axis, double x, double y, double z)
-{
-    return axis == AXIS_X ? x : axis == AXIS_Y ? y : z;
-}
-
 static struct interval point_interval(double at)
 {
     return (struct interval){at, at};
@@ -60,8 +55,8 @@ static void check_free(struct check *check, const struct plane *plane,
     for (size_t k = 0; k < plane->part_count; k++) {
         bool meets = false;
         struct vec2 where = {0, 0};
-        if (check_status(
-                check, shape_meets(&plane->parts[k].shape, &way, 0, &meets, &where)) &&
+        if (check_status(check, shape_meets(&plane->parts[k].shape, &way,
+                                            plane_tolerance(plane), &meets, &where)) &&
             meets)
             report_crossing(check, plane, &plane->parts[k], where, what);
     }
@@ -103,15 +98,9 @@ static void check_beam(struct check *check)
             continue;
         if (plane_kind_is_along(plane->kind) && beam->has_path)
             check_path(check, plane);
-        if (!plane_kind_is_along(plane->kind) && beam->has_footprint)
+        if (plane_kind_is_across(plane->kind) && beam->has_footprint)
             check_footprint(check, plane);
     }
-}
-
-static struct vec2 project(const struct plane *plane, double x, double y, double z)
-{
-    return (struct vec2){coordinate(plane_kind_axis(plane->kind, 0), x, y, z),
-                         coordinate(plane_kind_axis(plane->kind, 1), x, y, z)};
 }
 
 static bool holds_point(const struct plane *plane, struct vec2 p)
@@ -131,7 +120,7 @@ static void check_named_probe(struct check *check, const struct probe *probe)
                            name);
         return;
     }
-    struct vec2 p = project(plane, probe->x, probe->y, probe->z);
+    struct vec2 p = plane_kind_project(probe->plane, probe->x, probe->y, probe->z);
     (void)(covers(check, plane, 0, point_interval(p.a), "the probe", probe->place) &&
            covers(check, plane, 1, point_interval(p.b), "the probe", probe->place));
 }
@@ -146,15 +135,19 @@ static void check_probe(struct check *check, const struct probe *probe)
     }
     for (int k = 0; k < PLANE_KINDS; k++) {
         const struct plane *plane = &geometry->planes[k];
-        bool counts = geometry_probe_counts(geometry, probe, (enum plane_kind)k);
-        held = held || (counts && holds_point(plane, project(plane, probe->x, probe->y,
-                                                             probe->z)));
+        const enum plane_kind kind = (enum plane_kind)k;
+        held = held || (geometry_probe_counts(geometry, probe, kind) &&
+                        holds_point(plane, plane_kind_project(kind, probe->x, probe->y,
+                                                              probe->z)));
     }
     if (!held)
         (void)mistakes_add(
             &check->mistakes, probe->place,
             "the probe lies outside every plane; expected a place inside "
-            "a region; found x %g mm, y %g mm, z %g mm",
+            "a region%s; found x %g mm, y %g mm, z %g mm",
+            probe->has_z || !geometry->planes[PLANE_ELECTRIC_TURNED].present
+                ? ""
+                : ", with its z given for electric_turned",
             probe->x * 1e3, probe->y * 1e3, probe->z * 1e3);
 }
 
@@ -175,8 +168,8 @@ static void check_reference(struct check *check, const struct plane *plane)
     const char *what = geometry->has_reference
                            ? "the reference point"
                            : "the reference point (the centre, as none is given)";
-    struct vec2 p = project(plane, geometry->reference_x, geometry->reference_y,
-                            geometry->reference_z);
+    struct vec2 p = plane_kind_project(plane->kind, geometry->reference_x,
+                                       geometry->reference_y, geometry->reference_z);
     if (!covers(check, plane, 0, point_interval(p.a), what, plane->place) ||
         !covers(check, plane, 1, point_interval(p.b), what, plane->place))
         return;
@@ -210,19 +203,32 @@ static void check_lattice(struct check *check, const struct plane *plane)
     }
 }
 
+static void check_lattices(struct check *check)
+{
+    const struct geometry *geometry = check->geometry;
+    const struct plane *electric =
+        lattice_plane(geometry, PLANE_ELECTRIC_ALONG, PLANE_ELECTRIC_ACROSS);
+    const struct plane *magnetic =
+        lattice_plane(geometry, PLANE_MAGNETIC_ALONG, PLANE_MAGNETIC_ACROSS);
+    check_lattice(check, electric);
+    check_lattice(check, magnetic);
+    if (electric == NULL && magnetic == NULL &&
+        geometry->planes[PLANE_ELECTRIC_TURNED].present)
+        (void)mistakes_add(&check->mistakes, geometry->lattice.place,
+                           "the lattice cannot be filled; expected a plane along or "
+                           "across the beam; found \"electric_turned\" only");
+}
+
 void check_extent(struct check *check)
 {
     const struct geometry *geometry = check->geometry;
     check_beam(check);
     for (size_t k = 0; k < geometry->probe_count; k++)
         check_probe(check, &geometry->probes[k]);
+    /* No ratio is made of a turned plane. */
     for (int k = 0; k < PLANE_KINDS && reference_matters(geometry); k++)
-        if (geometry->planes[k].present)
+        if (geometry->planes[k].present && !plane_kind_is_turned((enum plane_kind)k))
             check_reference(check, &geometry->planes[k]);
-    if (!geometry->lattice.present)
-        return;
-    check_lattice(check,
-                  lattice_plane(geometry, PLANE_ELECTRIC_ALONG, PLANE_ELECTRIC_ACROSS));
-    check_lattice(check,
-                  lattice_plane(geometry, PLANE_MAGNETIC_ALONG, PLANE_MAGNETIC_ACROSS));
+    if (geometry->lattice.present)
+        check_lattices(check);
 }

@@ -40,6 +40,16 @@ void describe_point(const struct plane *plane, struct vec2 p, char *text, size_t
 /** Notes that memory ran out if status says so; true if status is STATUS_OK. */
 bool check_status(struct check *check, enum status status);
 
+/** True if two numbers differ by no more than the rounding of the file's arithmetic. */
+bool same_potential(double p, double q);
+
+/** gain[s]; 0 where there is no gain array. */
+double linear_gain(const struct linear *p, size_t s);
+
+/** A part that lies in the region against its side s (enum side_index). */
+void check_side(struct check *check, const struct plane *plane, int s,
+                const struct part *part);
+
 /** Region, parts, walls and driving potential of one plane that is present. */
 void check_plane(struct check *check, const struct plane *plane);
 

@@ -8,44 +8,18 @@
 #include "mesh/geometry_check_internal.h"
 #include "shared/mem.h"
 
-#define THICKNESS_MIN  1e-7  /* of the smaller side of the region */
-#define SAME_POTENTIAL 1e-12 /* relative: rounding of the arithmetic in the file */
-#define SIZE_MIN       1e-6  /* m, side of a region */
-#define SIZE_MAX_SIDE  1e3   /* m */
-#define ASPECT_MAX     1e4   /* longer side over shorter side */
-#define POINT_TEXT     80
-
-static bool same_number(double p, double q)
-{
-    return fabs(p - q) <= SAME_POTENTIAL * fmax(fabs(p), fabs(q));
-}
-
-static double gain_of(const struct linear *p, size_t s)
-{
-    return p->gain != NULL ? p->gain[s] : 0;
-}
+#define THICKNESS_MIN 1e-7 /* of the smaller side of the region */
+#define SIZE_MIN      1e-6 /* m, side of a region */
+#define SIZE_MAX_SIDE 1e3  /* m */
+#define ASPECT_MAX    1e4  /* longer side over shorter side */
+#define POINT_TEXT    80
 
 static bool same_linear(const struct check *check, const struct linear *p,
                         const struct linear *q)
 {
-    bool same = same_number(p->constant, q->constant);
+    bool same = same_potential(p->constant, q->constant);
     for (size_t s = 0; s < check->geometry->supply_count; s++)
-        same = same && same_number(gain_of(p, s), gain_of(q, s));
-    return same;
-}
-
-/* Is the part at the potential that a side has at fraction t of its length? */
-static bool matches_side(const struct check *check, const struct part *part,
-                         const struct side *side, double t)
-{
-    const struct linear *p = &part->potential;
-    bool same =
-        same_number(p->constant, side->from.constant +
-                                     t * (side->to.constant - side->from.constant));
-    for (size_t s = 0; s < check->geometry->supply_count; s++) {
-        double from = gain_of(&side->from, s), to = gain_of(&side->to, s);
-        same = same && same_number(gain_of(p, s), from + t * (to - from));
-    }
+        same = same && same_potential(linear_gain(p, s), linear_gain(q, s));
     return same;
 }
 
@@ -110,88 +84,47 @@ static bool bounds_apart(const struct shape *p, const struct shape *q, double to
            p_low.b > q_high.b + tolerance || q_low.b > p_high.b + tolerance;
 }
 
+/* May two parts share a place? Insulators fill what conductors leave, and conductors at
+ * one potential are one. Floating ones have a potential of their own. */
+static bool may_meet(const struct check *check, const struct part *p,
+                     const struct part *q)
+{
+    if (!part_is_conductor(p) || !part_is_conductor(q))
+        return true;
+    return p->kind != PART_FLOATING && q->kind != PART_FLOATING &&
+           same_linear(check, &p->potential, &q->potential);
+}
+
+/* What is wrong with two parts that meet, and what would be right. */
+static const char *meeting_words(const struct part *p, const struct part *q)
+{
+    if (p->kind == PART_FLOATING && q->kind == PART_FLOATING)
+        return "touch or overlap, though both float; expected a gap, or one part drawn "
+               "for both";
+    if (p->kind == PART_FLOATING || q->kind == PART_FLOATING)
+        return "touch or overlap, so the floating one would be at the potential of the "
+               "other; expected a gap between them";
+    return "touch or overlap at different potential; expected a gap between them";
+}
+
 static void check_pair(struct check *check, const struct plane *plane,
                        const struct part *p, const struct part *q)
 {
     bool meets = false;
     struct vec2 where = {0, 0};
     double tolerance = plane_tolerance(plane);
-    if (same_linear(check, &p->potential, &q->potential) ||
-        bounds_apart(&p->shape, &q->shape, tolerance) ||
+    if (may_meet(check, p, q) || bounds_apart(&p->shape, &q->shape, tolerance) ||
         !check_status(check,
                       shape_meets(&p->shape, &q->shape, tolerance, &meets, &where)) ||
         !meets)
         return;
     char at[POINT_TEXT];
     describe_point(plane, where, at, sizeof at);
-    (void)mistakes_add(
-        &check->mistakes, q->place,
-        "the parts \"%.60s\" and \"%.60s\" of \"%s\" touch or overlap at "
-        "different potential; expected a gap between them; found them "
-        "together at %s",
-        p->name, q->name, plane_kind_key(plane->kind), at);
-}
-
-/* Solid stretches of a part on side s (coordinates along the side). */
-static bool spans_on_side(struct check *check, const struct plane *plane, int s,
-                          const struct part *part, struct span **spans, size_t *count)
-{
-    struct vec2 low, high;
-    size_t capacity = 0;
-    double tolerance = plane_tolerance(plane);
-    shape_bounds(&part->shape, &low, &high);
-    const double reach[] = {low.a - plane->low.a, plane->high.a - high.a,
-                            low.b - plane->low.b, plane->high.b - high.b};
-    const double face[] = {low.a, high.a, low.b, high.b};
-    const double side[] = {plane->low.a, plane->high.a, plane->low.b, plane->high.b};
-    *spans = NULL;
-    *count = 0;
-    if (reach[s] > tolerance)
-        return true;
-    /* A face within the tolerance of the side, but not on it, is looked at itself. */
-    double at = fabs(reach[s]) <= tolerance ? face[s] : side[s];
-    int axis = s == SIDE_A_LOW || s == SIDE_A_HIGH ? 1 : 0;
-    return check_status(
-        check, shape_spans(&part->shape, axis, at, tolerance, spans, &capacity, count));
-}
-
-static void report_side(struct check *check, const struct plane *plane, int s,
-                        const struct part *part)
-{
-    static const char *const ends[] = {"low", "high"};
-    bool wall = plane->sides[s].kind == SIDE_WALL;
-    (void)mistakes_add(
-        &check->mistakes, part->place,
-        "the part \"%.60s\" touches the %s at the %s end of %s in \"%s\"; "
-        "expected %s; found another potential",
-        part->name, side_kind_key(plane->sides[s].kind), ends[s % 2],
-        axis_key(plane_kind_axis(plane->kind, s / 2)), plane_kind_key(plane->kind),
-        wall ? "a gap, or the potential of the wall there"
-             : "a gap, or a potential of 0");
-}
-
-static void check_side(struct check *check, const struct plane *plane, int s,
-                       const struct part *part)
-{
-    const struct side *side = &plane->sides[s];
-    bool along_b = s == SIDE_A_LOW || s == SIDE_A_HIGH;
-    double start = along_b ? plane->low.b : plane->low.a;
-    double length = (along_b ? plane->high.b : plane->high.a) - start;
-    struct span *spans = NULL;
-    size_t count = 0;
-    bool matches = true;
-    if (side->kind == SIDE_MIRROR)
-        return;
-    if (spans_on_side(check, plane, s, part, &spans, &count))
-        for (size_t k = 0; k < count; k++)
-            matches = matches &&
-                      matches_side(check, part, side,
-                                   fmin(fmax((spans[k].low - start) / length, 0), 1)) &&
-                      matches_side(check, part, side,
-                                   fmin(fmax((spans[k].high - start) / length, 0), 1));
-    mem_free(spans);
-    if (!matches)
-        report_side(check, plane, s, part);
+    (void)mistakes_add(&check->mistakes, q->place,
+                       "the parts \"%.60s\" and \"%.60s\" of \"%s\" %s; found them "
+                       "together at %s",
+                       p->name, q->name, plane_kind_key(plane->kind),
+                       meeting_words(p, q), at);
 }
 
 /* Solid thinner than the accuracy of the grid's surfaces could slip through it. */
@@ -229,6 +162,8 @@ struct drive {
     const struct linear *first; /* NULL until one is met */
     bool differs;               /* as linear forms */
     bool differs_now;           /* at the settings of the supplies */
+    bool floats;                /* a floating part was met */
+    bool charged;               /* and carries a charge, which drives a field too */
 };
 
 static void meet_potential(const struct check *check, struct drive *drive,
@@ -239,35 +174,55 @@ static void meet_potential(const struct check *check, struct drive *drive,
     if (same_linear(check, drive->first, potential))
         return;
     drive->differs = true;
-    drive->differs_now = drive->differs_now ||
-                         !same_number(geometry_potential(check->geometry, drive->first),
-                                      geometry_potential(check->geometry, potential));
+    drive->differs_now =
+        drive->differs_now ||
+        !same_potential(geometry_potential(check->geometry, drive->first),
+                        geometry_potential(check->geometry, potential));
+}
+
+static void meet_parts(const struct check *check, struct drive *drive,
+                       const struct plane *plane)
+{
+    for (size_t k = 0; k < plane->part_count; k++) {
+        const struct part *part = &plane->parts[k];
+        if (part->kind == PART_FLOATING) {
+            drive->floats = true;
+            drive->charged = drive->charged || part->charge != 0;
+        } else if (part_is_conductor(part)) {
+            meet_potential(check, drive, &part->potential);
+        }
+    }
+}
+
+/* Open sides stand for a potential of zero far away, and carry it. */
+static void meet_sides(const struct check *check, struct drive *drive,
+                       const struct plane *plane)
+{
+    for (int s = 0; s < SIDE_COUNT; s++) {
+        if (plane->sides[s].kind == SIDE_MIRROR)
+            continue;
+        meet_potential(check, drive, &plane->sides[s].from);
+        meet_potential(check, drive, &plane->sides[s].to);
+    }
 }
 
 static void check_drive(struct check *check, const struct plane *plane)
 {
-    struct drive drive = {NULL, false, false};
+    struct drive drive = {0};
     const char *name = plane_kind_key(plane->kind);
-    for (int s = 0; s < SIDE_COUNT; s++) {
-        if (plane->sides[s].kind == SIDE_MIRROR)
-            continue;
-        meet_potential(check, &drive, &plane->sides[s].from);
-        meet_potential(check, &drive, &plane->sides[s].to);
-    }
-    for (size_t k = 0; k < plane->part_count; k++)
-        meet_potential(check, &drive, &plane->parts[k].potential);
+    meet_sides(check, &drive, plane);
+    meet_parts(check, &drive, plane);
     if (drive.first == NULL)
-        (void)mistakes_add(
-            &check->mistakes, plane->place,
-            "nothing fixes the potential in \"%s\"; expected a wall or a "
-            "part; found mirrors only",
-            name);
-    else if (!drive.differs)
+        (void)mistakes_add(&check->mistakes, plane->place,
+                           "nothing fixes the potential in \"%s\"; expected a wall, an "
+                           "open side or a part at a potential; found mirrors%s only",
+                           name, drive.floats ? " and floating parts" : "");
+    else if (!drive.differs && !drive.charged)
         (void)mistakes_add(&check->mistakes, plane->place,
                            "there is no potential difference in \"%s\"; expected parts "
                            "or walls at different potential",
                            name);
-    else if (!drive.differs_now)
+    else if (!drive.differs_now && !drive.charged)
         messages_add(
             check->mistakes.messages, SEVERITY_WARNING, plane->place,
             "there is no potential difference in \"%s\" at the settings of the "

@@ -28,33 +28,40 @@ static enum status too_large(const struct grid *grid, struct messages *messages,
     return STATUS_INPUT;
 }
 
+static double solve_bytes(const struct grid *grid)
+{
+    return (double)grid->na * grid->nb * SOLVE_BYTES_PER_NODE;
+}
+
 static enum status check_size(const struct grid *grid, double budget,
                               struct messages *messages)
 {
-    double nodes = (double)grid->na * grid->nb;
-    double bytes = nodes * SOLVE_BYTES_PER_NODE;
-    if (!(bytes <= budget) || nodes > INT_MAX / 8)
+    const double nodes = (double)grid->na * grid->nb, bytes = solve_bytes(grid);
+    if ((budget > 0.0 && !(bytes <= budget)) || nodes > INT_MAX / 8)
         return too_large(grid, messages, bytes, budget);
     return STATUS_OK;
 }
 
-enum status grid_build(const struct plane *plane, double fineness, int level,
-                       double memory_budget, struct grid *grid,
-                       struct messages *messages)
+enum status grid_build(const struct plane *plane, const struct grid_request *request,
+                       struct grid *grid, struct messages *messages)
 {
     memset(grid, 0, sizeof *grid);
     grid->plane = plane;
-    enum status status = grid_place_lines(grid, fineness, level);
+    enum status status = grid_place_lines(grid, request);
     if (status == STATUS_SIZE) {
         messages_add(messages, SEVERITY_ERROR, plane->place,
                      "%s: a grid of fineness %g does not fit this region",
-                     plane_kind_key(plane->kind), fineness);
+                     plane_kind_key(plane->kind), request->fineness);
         status = STATUS_INPUT;
     }
     if (status == STATUS_OK)
-        status = check_size(grid, memory_budget, messages);
+        status = check_size(grid, request->memory_budget, messages);
     if (status == STATUS_OK)
         status = grid_classify(grid);
+    if (status == STATUS_OK)
+        status = grid_fill_media(grid);
+    if (status == STATUS_OK && grid->medium != NULL)
+        status = grid_find_faces(grid);
     if (status == STATUS_OK)
         status = grid_judge(grid, messages);
     if (status == STATUS_MEMORY)
@@ -62,6 +69,16 @@ enum status grid_build(const struct plane *plane, double fineness, int level,
                      "%s: not enough memory for the grid", plane_kind_key(plane->kind));
     if (status != STATUS_OK)
         grid_free(grid);
+    return status;
+}
+
+enum status grid_estimate(const struct plane *plane, const struct grid_request *request,
+                          double *bytes)
+{
+    struct grid grid = {.plane = plane};
+    enum status status = grid_place_lines(&grid, request);
+    *bytes = status == STATUS_OK ? solve_bytes(&grid) : 0.0;
+    grid_free(&grid);
     return status;
 }
 
@@ -81,6 +98,35 @@ const struct cut *grid_cut(const struct grid *grid, int node, enum leg leg)
         return NULL;
     const struct cut *cut = &grid->cuts[low];
     return cut->node == node && cut->leg == leg ? cut : NULL;
+}
+
+const struct face *grid_face(const struct grid *grid, int node, enum leg leg)
+{
+    if (grid->first_face == NULL)
+        return NULL;
+    const int row = node / grid->na;
+    int low = grid->first_face[row], high = grid->first_face[row + 1];
+    while (low < high) {
+        const int middle = (low + high) / 2;
+        const struct face *face = &grid->faces[middle];
+        if (face->node == node && face->leg == leg)
+            return face;
+        if (face->node < node || (face->node == node && face->leg < leg))
+            low = middle + 1;
+        else
+            high = middle;
+    }
+    return NULL;
+}
+
+/* Patch nodes run first along the link, then across it from low to high. */
+int face_patch(const struct grid *grid, const struct face *face, int k)
+{
+    const bool east = face->leg == LEG_EAST;
+    const int along = k % 2, across = k / 2 - 1;
+    const int i = face->node % grid->na + (east ? along : across);
+    const int j = face->node / grid->na + (east ? across : along);
+    return i >= 0 && j >= 0 && i < grid->na && j < grid->nb ? j * grid->na + i : -1;
 }
 
 int grid_interval(const double *lines, int count, double x)
@@ -103,5 +149,10 @@ void grid_free(struct grid *grid)
     mem_free(grid->owner);
     mem_free(grid->cuts);
     mem_free(grid->first_cut);
+    mem_free(grid->medium);
+    mem_free(grid->node_medium);
+    mem_free(grid->coefficient);
+    mem_free(grid->faces);
+    mem_free(grid->first_face);
     memset(grid, 0, sizeof *grid);
 }

@@ -12,10 +12,16 @@
 #define GRID_MERGE 1e-7
 
 /** Graded lines of both axes from the key points of the parts (grid_keys.c). */
-enum status grid_place_lines(struct grid *grid, double fineness, int level) MUST_CHECK;
+enum status grid_place_lines(struct grid *grid,
+                             const struct grid_request *request) MUST_CHECK;
 
 /** Owner of every node and all cuts (grid_nodes.c). */
 enum status grid_classify(struct grid *grid) MUST_CHECK;
+
+/** Media of the cells and the faces beside interfaces; nothing without insulators
+ *  (grid_media.c, grid_faces.c). */
+enum status grid_fill_media(struct grid *grid) MUST_CHECK;
+enum status grid_find_faces(struct grid *grid) MUST_CHECK;
 
 /** Gaps too thin for the grid and free spaces without a fixed potential
  *  (grid_check.c). */

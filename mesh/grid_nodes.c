@@ -103,6 +103,8 @@ static enum status sweep(struct grid *grid, int axis, enum pass pass,
     for (int k = 0; k < rows && status == STATUS_OK; k++) {
         const struct row row = row_of(grid, axis, k);
         for (size_t p = 0; p < plane->part_count && status == STATUS_OK; p++) {
+            if (!part_is_conductor(&plane->parts[p]))
+                continue;
             status = spans_of_row(grid, &plane->parts[p], axis, k, buffer);
             for (size_t s = 0; s < buffer->count && status == STATUS_OK; s++) {
                 if (pass == PASS_OWN)

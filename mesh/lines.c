@@ -11,11 +11,17 @@
 #include <limits.h>
 #include <math.h>
 #include <stdlib.h>
+#include <string.h>
 
 #include "shared/constants.h"
 #include "shared/mem.h"
 
-enum { TABLE_CELLS = 2000, FLATNESS = 8, SMOOTH_MINIMUM = 4, MIN_INTERVALS = 2 };
+enum {
+    TABLE_CELLS = 2000,
+    FLATNESS = 8,
+    SMOOTH_MINIMUM = 4, /* fourth_power */
+    MIN_INTERVALS = 2
+};
 
 struct stretch {
     double from, to;
@@ -27,9 +33,15 @@ struct table {
     double slope[TABLE_CELLS + 1]; /* dG/dt there */
 };
 
+/* Keys that agree in everything act as often as they were given: mirror twins repeat. */
+struct pull {
+    struct key_line key;
+    double times;
+};
+
 struct grading {
-    const struct key_line *keys;
-    size_t key_count;
+    const struct pull *pulls; /* [pull_count] of the keys with a power */
+    size_t pull_count;
     struct line_spacing spacing;
 };
 
@@ -40,18 +52,32 @@ double lines_corner_power(double free_angle)
     return power > 0.0 ? power : 0.0;
 }
 
+static double fourth_power(double x)
+{
+    return (x * x) * (x * x);
+}
+
+/* The crowding of a key at a distance (in references): its own near by, 1 far away. */
+static double crowding_at(const struct key_line *key, double distance)
+{
+    if (!(key->crowding > 0.0) || key->crowding == 1.0)
+        return 1.0;
+    return 1.0 + (key->crowding - 1.0) / (1.0 + fourth_power(distance));
+}
+
 /* One over the spacing: a sum of powers in which the smallest spacing rules. Keys without
- * crowding say nothing. */
+ * a power say nothing. */
 static double density(const struct grading *grading, double x)
 {
     const struct line_spacing *spacing = &grading->spacing;
     const double share = spacing->at_reference / spacing->coarsest;
     double sum = pow(share, SMOOTH_MINIMUM);
-    for (size_t k = 0; k < grading->key_count; k++) {
-        const struct key_line *key = &grading->keys[k];
+    for (size_t k = 0; k < grading->pull_count; k++) {
+        const struct key_line *key = &grading->pulls[k].key;
         double d = (fabs(x - key->at) + key->softening) / spacing->reference;
-        if (d > 0.0 && key->power > 0.0)
-            sum += pow(d, -SMOOTH_MINIMUM * key->power);
+        if (d > 0.0)
+            sum += grading->pulls[k].times * fourth_power(crowding_at(key, d)) *
+                   pow(d, -SMOOTH_MINIMUM * key->power);
     }
     return pow(sum, 1.0 / SMOOTH_MINIMUM) / spacing->at_reference;
 }
@@ -148,6 +174,30 @@ static size_t merged_ends(double low, double high, const struct key_line *keys,
     return kept;
 }
 
+static bool keys_agree(const struct key_line *p, const struct key_line *q)
+{
+    return p->at == q->at && p->power == q->power && p->softening == q->softening &&
+           p->crowding == q->crowding;
+}
+
+/* The keys with a power, repeated ones as one: pulls[key_count]. */
+static size_t gather_pulls(const struct key_line *keys, size_t key_count,
+                           struct pull *pulls)
+{
+    size_t count = 0;
+    for (size_t k = 0; k < key_count; k++) {
+        size_t p = 0;
+        if (!(keys[k].power > 0.0))
+            continue;
+        while (p < count && !keys_agree(&pulls[p].key, &keys[k]))
+            p++;
+        if (p == count)
+            pulls[count++] = (struct pull){keys[k], 0.0};
+        pulls[p].times += 1.0;
+    }
+    return count;
+}
+
 static int intervals_of(double total, int level)
 {
     double wanted = ceil(total - 1e-9);
@@ -195,7 +245,7 @@ enum status lines_build(double low, double high, const struct key_line *keys,
                         size_t key_count, struct line_spacing spacing, double merge,
                         int level, double **lines, int *count)
 {
-    const struct grading grading = {keys, key_count, spacing};
+    struct grading grading = {NULL, 0, spacing};
     enum status status = STATUS_OK;
     *lines = NULL;
     *count = 0;
@@ -205,12 +255,16 @@ enum status lines_build(double low, double high, const struct key_line *keys,
         return STATUS_SIZE;
 
     double *ends = MEM_NEW(key_count + 2, double);
+    struct pull *pulls = MEM_NEW(key_count, struct pull);
     struct table *table = MEM_NEW(1, struct table);
-    if (ends == NULL || table == NULL)
+    if (ends == NULL || pulls == NULL || table == NULL)
         status = STATUS_MEMORY;
     size_t end_count = 0;
-    if (status == STATUS_OK)
+    if (status == STATUS_OK) {
         end_count = merged_ends(low, high, keys, key_count, merge, ends);
+        grading.pull_count = gather_pulls(keys, key_count, pulls);
+        grading.pulls = pulls;
+    }
     for (size_t k = 0; k + 1 < end_count && status == STATUS_OK; k++)
         status =
             add_stretch(&grading, ends[k], ends[k + 1], level, table, lines, count);
@@ -220,6 +274,69 @@ enum status lines_build(double low, double high, const struct key_line *keys,
         *count = 0;
     }
     mem_free(ends);
+    mem_free(pulls);
     mem_free(table);
     return status;
+}
+
+/* A tail and the spacing it starts with. */
+struct tail {
+    double first; /* m */
+    struct line_tail shape;
+};
+
+static double tail_distance(const struct tail *tail, double k)
+{
+    return tail->first / tail->shape.growth * expm1(tail->shape.growth * k);
+}
+
+/* Steps at level 0 to the distance d; one that ends within round-off of it counts. */
+static double tail_steps(const struct tail *tail, double d)
+{
+    return ceil(log1p(tail->shape.growth * d / tail->first) / tail->shape.growth -
+                1e-9);
+}
+
+/* Steps of the whole tail at a level; -1 if there are too many. */
+static int tail_intervals(const struct tail *tail, int level)
+{
+    const double near = fmax(tail_steps(tail, tail->shape.distance), 1.0);
+    const double all = tail_steps(tail, tail->shape.reach * tail_distance(tail, near));
+    const double wanted = ldexp(all, level);
+    return wanted >= 1.0 && wanted < INT_MAX / 4 ? (int)wanted : -1;
+}
+
+static bool is_positive(double x)
+{
+    return x > 0.0 && isfinite(x);
+}
+
+enum status lines_extend(double **lines, int *count, bool high, struct line_tail tail,
+                         int level)
+{
+    if (!(is_positive(tail.growth) && is_positive(tail.distance) &&
+          is_positive(tail.reach) && level >= 0 && level < 16) ||
+        *count <= 1 << level)
+        return STATUS_SIZE;
+    const size_t had = (size_t)*count, step = (size_t)1 << level;
+    const double first = high ? (*lines)[had - 1] - (*lines)[had - 1 - step]
+                              : (*lines)[step] - (*lines)[0];
+    const struct tail t = {first, tail};
+    const int added = tail_intervals(&t, level);
+    if (added < 0 || *count > INT_MAX / 2 - added)
+        return STATUS_SIZE;
+    const size_t more = (size_t)added;
+    double *grown = mem_resize(*lines, had + more, sizeof *grown);
+    if (grown == NULL)
+        return STATUS_MEMORY;
+    if (!high)
+        memmove(grown + more, grown, had * sizeof *grown);
+    const double end = high ? grown[had - 1] : grown[more];
+    for (size_t k = 1; k <= more; k++) {
+        const double d = tail_distance(&t, ldexp((double)k, -level));
+        grown[high ? had - 1 + k : more - k] = high ? end + d : end - d;
+    }
+    *lines = grown;
+    *count += added;
+    return STATUS_OK;
 }

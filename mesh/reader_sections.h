@@ -18,6 +18,15 @@ void reader_planes(struct reader *reader, const struct node *node);
 /** parts: of one plane. */
 void reader_parts(struct reader *reader, const struct node *node, struct plane *plane);
 
+/** A new part at the end of the plane, blamed on node; NULL if memory ran out or there
+ *  are too many. */
+struct part *reader_add_part(struct reader *reader, const struct node *node,
+                             struct plane *plane);
+
+/** twin: of the part with index `original` of the plane, read from the part's node. */
+bool reader_twins(struct reader *reader, const struct node *node, struct plane *plane,
+                  size_t original);
+
 /** The one shape (box, disc or outline, with rounding) among the keys of a mapping. A
  *  turn is not applied. False after a mistake; the shape is then empty. */
 bool reader_shape(struct reader *reader, const struct node *node, enum plane_kind kind,

@@ -36,9 +36,13 @@ static bool read_plane_name(struct reader *reader, const struct node *node,
         *plane = (enum plane_kind)k;
         return true;
     }
-    return reader_expected(reader, node, "plane",
-                           "electric_along, electric_across, magnetic_along or "
-                           "magnetic_across");
+    char names[PLANE_KINDS * 20] = "one of ";
+    for (int k = 0; k < PLANE_KINDS; k++) {
+        const size_t used = strlen(names);
+        (void)snprintf(names + used, sizeof names - used, "%s%s", k > 0 ? ", " : "",
+                       plane_kind_key((enum plane_kind)k));
+    }
+    return reader_expected(reader, node, "plane", names);
 }
 
 static void read_probe(struct reader *reader, const struct node *node)

@@ -66,6 +66,12 @@ struct surface_point {
                               positive also for hollow surfaces */
     double corner_distance; /* m: distance to the nearest sharp corner of the shape
                                that stands out into free space; INFINITY if none */
+    struct vec2 corner;     /* m: that corner; 0 if none */
+    double bend;            /* 1/m: curvature of the surface's own piece, positive where
+                               it stands out; 0 on straight edges, chords included */
+    double reach;           /* m: the point stands for the surface up to this far along
+                               it on either side; such stretches fill the surface. 0 on
+                               chords of a smooth curve */
 };
 
 /** Box with sides parallel to the axes, corners rounded by `rounding` (m, 0 = sharp,
@@ -122,10 +128,16 @@ enum status shape_key_points(const struct shape *shape, struct key_point **point
                              size_t *count) MUST_CHECK;
 
 /** Points of the remaining surface, at most `spacing` (m) apart along it, not on a
- *  sharp corner; the same points for the same arguments. *points is allocated.
+ *  sharp corner; the same points for the same arguments. *points is allocated. A chord
+ *  of a smooth curve (vertices that turn by less than 20 degrees) has two points whatever
+ *  its length, where the field on the chain is that on the curve to first order.
  *  STATUS_SIZE: spacing is not positive or asks for more than 1e8 points on an edge. */
 enum status shape_surface(const struct shape *shape, double spacing,
                           struct surface_point **points, size_t *count) MUST_CHECK;
+
+/** The place at arc length s (m, |s| <= reach; anticlockwise round the solid positive)
+ *  from a point of the surface, exactly on its piece. */
+struct vec2 surface_point_along(const struct surface_point *point, double s);
 
 /** True if the two closed shapes have a point in common (touching within tolerance
  *  (m) counts); *where (may be NULL) is such a point. */

@@ -2,7 +2,10 @@
 
 /* Points of the surface. Each piece of surface is divided into equal steps and gets a
  * point in the middle of each, so no point sits on a corner and the same arguments
- * always give the same points. */
+ * always give the same points. Chords of a smooth curve are different: the field on a
+ * regular polygon of n sides is that on a circle times |2 sin(n theta/2)|^(-2/n), theta
+ * the angle on the circle it is mapped to (Schwarz-Christoffel map of its outside), and
+ * that is 1 a sixth of a side from its ends. */
 
 #include "mesh/shape.h"
 
@@ -54,17 +57,43 @@ static double edge_curve_radius(const struct outline *outline, size_t k)
     return n > 0 ? n / (at_start + at_end) : (double)INFINITY;
 }
 
-/* Distance to the nearest sharp corner that stands out. */
-static double corner_distance(const struct sampler *sampler, struct vec2 p)
+/* Fills in the nearest sharp corner that stands out. */
+static void find_corner(const struct sampler *sampler, struct surface_point *point)
 {
-    double nearest = (double)INFINITY;
-
+    point->corner_distance = (double)INFINITY;
     for (size_t i = 0; i < sampler->key_count; i++) {
         const struct key_point *key = &sampler->keys[i];
-        if (key->radius == 0 && key->free_angle > PI + SMOOTH_TURN)
-            nearest = fmin(nearest, vec2_length(vec2_sub(p, key->at)));
+        double distance = vec2_length(vec2_sub(point->at, key->at));
+        if (key->radius == 0 && key->free_angle > PI + SMOOTH_TURN &&
+            distance < point->corner_distance) {
+            point->corner_distance = distance;
+            point->corner = key->at;
+        }
     }
-    return nearest;
+}
+
+/* Curvature of an edge, positive where the surface stands out along the normal. */
+static double edge_bend(const struct edge *edge, const struct surface_point *point)
+{
+    struct vec2 out = vec2_sub(point->at, edge->centre);
+
+    if (!(edge->radius > 0))
+        return 0;
+    return (vec2_dot(out, point->normal) > 0 ? 1 : -1) / edge->radius;
+}
+
+struct vec2 surface_point_along(const struct surface_point *point, double s)
+{
+    struct vec2 along = {-point->normal.b, point->normal.a};
+    double turn = point->bend * s;
+    /* sin(x)/x and (1 - cos(x))/x without loss where the piece is straight */
+    double half = sin(0.5 * turn);
+    double forward = turn != 0 ? sin(turn) / point->bend : s;
+    double down = turn != 0 ? 2 * half * half / point->bend : 0;
+    struct vec2 step =
+        vec2_sub(vec2_scale(along, forward), vec2_scale(point->normal, down));
+
+    return vec2_add(point->at, step);
 }
 
 static enum status add_point(struct sampler *sampler, struct surface_point point)
@@ -72,7 +101,7 @@ static enum status add_point(struct sampler *sampler, struct surface_point point
     void *array = sampler->items;
     enum status status;
 
-    point.corner_distance = corner_distance(sampler, point.at);
+    find_corner(sampler, &point);
     status = mem_grow(&array, &sampler->capacity, sampler->count + 1,
                       sizeof *sampler->items);
     sampler->items = array;
@@ -81,21 +110,52 @@ static enum status add_point(struct sampler *sampler, struct surface_point point
     return status;
 }
 
+static struct surface_point point_of(const struct sampler *sampler, size_t o, size_t k,
+                                     double t, double radius)
+{
+    const struct edge *edge = &sampler->shape->outlines[o].edges[k];
+    struct surface_point point = {.at = edge_point(edge, t),
+                                  .normal = shape_normal(sampler->shape, o, k, t),
+                                  .radius = radius};
+
+    point.bend = edge_bend(edge, &point);
+    return point;
+}
+
+/* On a chord of a curve the field is lower in the middle than on the curve and grows
+ * without bound towards the vertices, by the turn of the chain to first order. A sixth of
+ * the chord from either end it is that of the curve. */
+static enum status sample_chord(struct sampler *sampler, size_t o, size_t k,
+                                struct piece piece, double radius)
+{
+    static const double sixths[2] = {1.0 / 6.0, 5.0 / 6.0};
+    enum status status = STATUS_OK;
+
+    for (int i = 0; i < 2 && status == STATUS_OK; i++) {
+        double t = piece.from + (piece.to - piece.from) * sixths[i];
+        status = add_point(sampler, point_of(sampler, o, k, t, radius));
+    }
+    return status;
+}
+
 static enum status sample_piece(struct sampler *sampler, size_t o, size_t k,
                                 struct piece piece)
 {
     const struct outline *outline = &sampler->shape->outlines[o];
     const struct edge *edge = &outline->edges[k];
-    double steps = ceil(edge_length(edge) * (piece.to - piece.from) / sampler->spacing);
+    double length = edge_length(edge) * (piece.to - piece.from);
+    double steps = ceil(length / sampler->spacing);
     double radius = edge_curve_radius(outline, k);
     enum status status = STATUS_OK;
 
     if (!(steps <= STEPS_MAX))
         return STATUS_SIZE;
+    if (edge->radius == 0 && isfinite(radius))
+        return sample_chord(sampler, o, k, piece, radius);
     for (long i = 0; i < (long)steps && status == STATUS_OK; i++) {
         double t = piece.from + (piece.to - piece.from) * ((double)i + 0.5) / steps;
-        struct surface_point point = {edge_point(edge, t),
-                                      shape_normal(sampler->shape, o, k, t), radius, 0};
+        struct surface_point point = point_of(sampler, o, k, t, radius);
+        point.reach = 0.5 * length / steps;
         status = add_point(sampler, point);
     }
     return status;

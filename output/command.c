@@ -72,6 +72,7 @@ static enum status solve(const struct command *command, const struct geometry *g
 {
     struct run_options options = {.fineness = command->fineness,
                                   .levels = command->grids,
+                                  .within = command->within,
                                   .progress = progress ? show_progress : NULL,
                                   .context = progress};
     enum status status = run_geometry(geometry, &options, result, messages);
@@ -120,8 +121,12 @@ static enum status build_grids(const struct command *command,
     for (int k = 0; k < PLANE_KINDS; k++) {
         if (!geometry->planes[k].present)
             continue;
-        enum status status = grid_build(&geometry->planes[k], fineness, 0,
-                                        geometry->memory_budget, &grids[k], messages);
+        enum status status =
+            grid_build(&geometry->planes[k],
+                       &(struct grid_request){.fineness = fineness,
+                                              .level = 0,
+                                              .memory_budget = geometry->memory_budget},
+                       &grids[k], messages);
         if (status == STATUS_MEMORY)
             return status;
         if (status)
@@ -130,14 +135,32 @@ static enum status build_grids(const struct command *command,
     return worst;
 }
 
+/* What the file gives of a part: potential, charge or permittivity. */
+static void describe_given(const struct geometry *geometry, const struct part *part,
+                           enum plane_kind kind, char *text, size_t size)
+{
+    char number[NUMBER_TEXT];
+    if (part->kind == PART_INSULATOR) {
+        number_format(part->permittivity, 0, number, sizeof number);
+        (void)snprintf(text, size, "eps %s", number);
+    } else if (part->kind == PART_FLOATING && part->charge == 0) {
+        (void)snprintf(text, size, "uncharged");
+    } else if (part->kind == PART_FLOATING) {
+        number_quantity(part->charge, 0, plane_kind_is_turned(kind) ? "C" : "C/m", text,
+                        size);
+    } else {
+        number_quantity(geometry_potential(geometry, &part->potential), 0,
+                        plane_kind_is_magnetic(kind) ? "A" : "V", text, size);
+    }
+}
+
 static void list_part(struct sink *sink, const struct geometry *geometry,
-                      const struct part *part, bool magnetic)
+                      const struct part *part, enum plane_kind kind)
 {
     struct vec2 low, high;
-    char value[NUMBER_TEXT];
+    char value[NUMBER_TEXT + 8];
     shape_bounds(&part->shape, &low, &high);
-    number_quantity(geometry_potential(geometry, &part->potential), 0,
-                    magnetic ? "A" : "V", value, sizeof value);
+    describe_given(geometry, part, kind, value, sizeof value);
     sink_print(sink, "    %-9s %-28s %-11s %.6g..%.6g, %.6g..%.6g mm\n",
                part_kind_key(part->kind), part->name, value, low.a * 1e3, high.a * 1e3,
                low.b * 1e3, high.b * 1e3);
@@ -161,8 +184,7 @@ static void list_plane(struct sink *sink, const struct geometry *geometry,
                grid->na, grid->nb, grid->free_count, grid->cut_count);
     sink_print(sink, "  %zu parts (%s range, %s range)\n", plane->part_count, a, b);
     for (size_t k = 0; k < plane->part_count; k++)
-        list_part(sink, geometry, &plane->parts[k],
-                  plane_kind_is_magnetic(plane->kind));
+        list_part(sink, geometry, &plane->parts[k], plane->kind);
 }
 
 static enum status list_geometry(const struct geometry *geometry,

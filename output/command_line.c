@@ -13,12 +13,19 @@
 
 #include "output/words.h"
 #include "shared/mem.h"
+#include "solver/accuracy.h"
 
 #define FOR_RUN   1U
 #define FOR_DRAW  2U
 #define WORD_SIZE 64 /* longer words have no near neighbour */
 
-enum option_kind { OPTION_OUTPUT, OPTION_FINENESS, OPTION_GRIDS, OPTION_QUIET };
+enum option_kind {
+    OPTION_OUTPUT,
+    OPTION_FINENESS,
+    OPTION_GRIDS,
+    OPTION_WITHIN,
+    OPTION_QUIET
+};
 
 struct option_rule {
     const char *name;
@@ -31,6 +38,7 @@ static const struct option_rule option_rules[] = {
     {"--output", OPTION_OUTPUT, true, FOR_RUN | FOR_DRAW},
     {"--fineness", OPTION_FINENESS, true, FOR_RUN | FOR_DRAW},
     {"--grids", OPTION_GRIDS, true, FOR_RUN},
+    {"--within", OPTION_WITHIN, true, FOR_RUN},
     {"--quiet", OPTION_QUIET, false, FOR_RUN | FOR_DRAW},
 };
 #define OPTION_RULES (sizeof option_rules / sizeof option_rules[0])
@@ -122,20 +130,19 @@ static enum status unknown_command(const char *word, struct messages *messages)
                    nearest);
 }
 
-static enum status parse_fineness(const char *text, struct command *command,
-                                  struct messages *messages)
+/* A number from least to most; NaN is none. */
+static enum status parse_number(const char *name, const char *text, double least,
+                                double most, double *number, struct messages *messages)
 {
     char *end;
     errno = 0;
     double value = strtod(text, &end);
-    if (end != text && !*end && !errno && value >= FINENESS_LEAST &&
-        value <= FINENESS_MOST) {
-        command->fineness = value;
+    if (end != text && !*end && !errno && value >= least && value <= most) {
+        *number = value;
         return STATUS_OK;
     }
     messages_add(messages, SEVERITY_ERROR, (struct place){0, 0},
-                 "--fineness takes a number from %g to %g, not '%s'", FINENESS_LEAST,
-                 FINENESS_MOST, text);
+                 "%s takes a number from %g to %g, not '%s'", name, least, most, text);
     return STATUS_INPUT;
 }
 
@@ -164,9 +171,13 @@ static enum status apply_option(const struct option_rule *rule, const char *valu
                      "--output takes the name of a folder");
         return STATUS_INPUT;
     case OPTION_FINENESS:
-        return parse_fineness(value, command, messages);
+        return parse_number(rule->name, value, FINENESS_LEAST, FINENESS_MOST,
+                            &command->fineness, messages);
     case OPTION_GRIDS:
         return parse_grids(value, command, messages);
+    case OPTION_WITHIN:
+        return parse_number(rule->name, value, ACCURACY_LEAST, ACCURACY_MOST,
+                            &command->within, messages);
     case OPTION_QUIET:
         command->quiet = true;
         break;

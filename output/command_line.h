@@ -24,6 +24,7 @@ struct command {
     const char *output;      /* borrowed; NULL: beside the file */
     double fineness;         /* 0: as the file says */
     int grids;               /* 0: the default */
+    double within;           /* relative accuracy asked for; 0: none */
     bool quiet;
 };
 

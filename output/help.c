@@ -45,6 +45,11 @@ static const char run[] =
     "                   default: as the file says, else 1\n"
     "  --grids N        grids of the family, 2 or 3; default 3. Two are quicker, but\n"
     "                   the order of convergence is then assumed, not measured\n"
+    "  --within X       relative accuracy, 1e-12 to 0.1, of the figures that limits\n"
+    "                   refer to (of limit or value, whichever is larger); without\n"
+    "                   limits, of the main figures and the probes. Refines where the\n"
+    "                   error comes from until it is met or the memory budget of the\n"
+    "                   file is spent, and says which\n"
     "  --quiet          no sheet and no progress; only messages and the exit status\n"
     "  --help           this text\n"
     "\n" EXIT_HELP;

@@ -13,17 +13,20 @@
 #include "shared/constants.h"
 #include "shared/mem.h"
 
-#define AXES_WIDTH   760.0 /* pixels, the most the axes take */
-#define AXES_HEIGHT  600.0
-#define AXES_LEAST   230.0
-#define MARGIN_LEFT  90.0
-#define MARGIN_TOP   50.0
-#define MARGIN_LOW   70.0
-#define CHORD_ANGLE  (PI / 60) /* of a drawn arc */
-#define CHORD_SHARE  200.0     /* a straight edge is cut into pieces of extent/this */
-#define LETTER_WIDTH 8.5       /* pixels of a letter of a part's name */
-#define LETTER_LINE  18.0
-#define NAMES_MOST   40
+#define AXES_WIDTH  760.0 /* pixels, the most the axes take */
+#define AXES_HEIGHT 600.0
+#define AXES_LEAST  230.0
+#define MARGIN_LEFT 90.0
+#define MARGIN_TOP  50.0
+#define MARGIN_LOW  70.0
+#define CHORD_ANGLE (PI / 60) /* of a drawn arc */
+#define CHORD_SHARE 200.0     /* a straight edge is cut into pieces of extent/this */
+
+double picture_scale(const struct frame *frame)
+{
+    struct vec2 size = vec2_sub(frame->high, frame->low);
+    return fmin(AXES_WIDTH / size.a, AXES_HEIGHT / size.b);
+}
 
 struct frame picture_frame(struct vec2 low, struct vec2 high, const char *axis_a,
                            const char *axis_b, int right, int bottom)
@@ -131,9 +134,10 @@ static enum status cover_row(struct raster *raster, const struct shape *shape, i
     return status;
 }
 
+/* Conductors that a filled polygon would not show. */
 static bool has_cuts(const struct part *part)
 {
-    return part->shape.count > 1;
+    return part_is_conductor(part) && part->shape.count > 1;
 }
 
 bool picture_needs_cover(const struct plane *plane)
@@ -244,12 +248,13 @@ static void print_solid(struct sink *script, const struct shape *shape)
     sink_print(script, "\n");
 }
 
+/* Insulators are left clear: the field goes on inside them. */
 static void print_solids(struct sink *script, const struct plane *plane)
 {
     sink_print(script, "$solids << EOD\n%.9g %.9g\n\n", plane->low.a * 1e3,
                plane->low.b * 1e3);
     for (size_t k = 0; k < plane->part_count; k++)
-        if (!has_cuts(&plane->parts[k]))
+        if (part_is_conductor(&plane->parts[k]) && !has_cuts(&plane->parts[k]))
             print_solid(script, &plane->parts[k].shape);
     sink_print(script, "EOD\n");
 }
@@ -269,81 +274,18 @@ void picture_outlines(struct sink *script, const struct plane *plane)
     print_solids(script, plane);
 }
 
-/* Box of a label in pixels from the lower left corner of the axes. */
-struct label {
-    double x, y, half_width;
-};
-
-static bool labels_meet(struct label p, struct label q)
+void picture_shorten(char *text, size_t most)
 {
-    return fabs(p.x - q.x) < p.half_width + q.half_width &&
-           fabs(p.y - q.y) < LETTER_LINE;
-}
-
-/* Moves a label up or down, in turn ever farther, until it meets no earlier one and
- * stays inside the axes; false if there is no such place. */
-static bool place_label(struct label *label, const struct label *placed, size_t count,
-                        double height)
-{
-    double home = label->y;
-    for (int k = 0; k < 24; k++) {
-        int lines = (k % 2 ? 1 : -1) * ((k + 1) / 2);
-        label->y = home + lines * LETTER_LINE;
-        bool free = label->y > LETTER_LINE / 2 && label->y < height - LETTER_LINE / 2;
-        for (size_t q = 0; free && q < count; q++)
-            free = !labels_meet(*label, placed[q]);
-        if (free)
-            return true;
-    }
-    return false;
-}
-
-/* Letters of UTF-8 text. */
-static double letters(const char *text)
-{
-    double count = 0;
-    for (; *text; text++)
-        count += ((unsigned char)*text & 0xC0) != 0x80;
-    return count;
-}
-
-/* Where the name of a part would like to be: beside a thin part, on the side away from
- * the middle of the window; inside a thick one. */
-static struct label name_label(const struct part *part, const struct frame *frame,
-                               double scale)
-{
-    struct vec2 low, high;
-    shape_bounds(&part->shape, &low, &high);
-    struct vec2 size = vec2_sub(frame->high, frame->low);
-    double half = letters(part->name) * LETTER_WIDTH / 2 + 6;
-    double x = (0.5 * (low.a + high.a) - frame->low.a) * scale;
-    double y = (0.5 * (low.b + high.b) - frame->low.b) * scale;
-    double thickness = (high.b - low.b) * scale, width = (high.a - low.a) * scale;
-    if (thickness < 1.5 * LETTER_LINE || width < 2 * half)
-        y += (y > 0.5 * size.b * scale ? 0.5 : -0.5) * (thickness + 1.4 * LETTER_LINE);
-    x = fmin(fmax(x, half), size.a * scale - half);
-    return (struct label){x, y, half};
-}
-
-void picture_names(struct sink *script, const struct plane *plane,
-                   const struct frame *frame)
-{
-    struct label placed[NAMES_MOST];
     size_t count = 0;
-    struct vec2 size = vec2_sub(frame->high, frame->low);
-    double scale = fmin(AXES_WIDTH / size.a, AXES_HEIGHT / size.b);
-    for (size_t k = 0; k < plane->part_count && count < NAMES_MOST; k++) {
-        struct label label = name_label(&plane->parts[k], frame, scale);
-        if (!place_label(&label, placed, count, size.b * scale))
-            continue;
-        sink_print(script, "set label ");
-        plot_quote(script, plane->parts[k].name);
-        sink_print(script, " at %.9g,%.9g center front font ',12' boxed\n",
-                   (frame->low.a + label.x / scale) * 1e3,
-                   (frame->low.b + label.y / scale) * 1e3);
-        placed[count++] = label;
+    char *cut = NULL;
+    for (char *byte = text; *byte; byte++) {
+        if (((unsigned char)*byte & 0xC0) == 0x80)
+            continue; /* inside a letter */
+        if (count++ == most - 3)
+            cut = byte;
     }
-    sink_print(script, "set style textbox opaque fc 'white' noborder margins 1.5,1\n");
+    if (count > most)
+        memcpy(cut, "...", sizeof "...");
 }
 
 double picture_step(double span, int most)

@@ -36,6 +36,9 @@ struct raster {
 struct frame picture_frame(struct vec2 low, struct vec2 high, const char *axis_a,
                            const char *axis_b, int right, int bottom);
 
+/** Pixels of a metre. */
+double picture_scale(const struct frame *frame);
+
 /** Prints title, ranges, axis labels with units and equal scales. */
 void picture_axes(struct sink *script, const struct frame *frame, const char *title);
 
@@ -77,10 +80,14 @@ void raster_free(struct raster *raster);
  *  at least one point in each block. */
 void picture_outlines(struct sink *script, const struct plane *plane);
 
-/** Prints labels with the names of the parts: beside thin parts, inside thick ones,
- *  moved apart where they would meet. */
+/** Prints labels with the names of the parts (picture_names.c): inside thick ones, beside
+ *  thin ones, else at the nearest free place with a thread to the part. A name that finds
+ *  no place is left out. */
 void picture_names(struct sink *script, const struct plane *plane,
                    const struct frame *frame);
+
+/** Cuts text (UTF-8) to at most `most` > 3 letters, the last three then being dots. */
+void picture_shorten(char *text, size_t most);
 
 /** A step of 1, 2 or 5 times a power of ten that divides span into at most `most`
  *  pieces; 1 if span is not positive. */

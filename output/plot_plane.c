@@ -1,13 +1,14 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later */
 
-/* The map is for the eye; the numbers are in the VTK file. Parts are painted over the
- * map, so the constant potential inside them never shows as field-free space. */
+/* The map is for the eye; the numbers are in the VTK file. Conductors are painted over
+ * the map, so the constant potential inside them never shows as field-free space. */
 
 #include "output/plot_plane.h"
 
 #include <math.h>
 #include <stdio.h>
 
+#include "mesh/grid_crop.h"
 #include "output/number.h"
 #include "output/picture.h"
 #include "output/words.h"
@@ -25,6 +26,7 @@ const char *plot_plane_name(enum plane_kind kind)
         [PLANE_ELECTRIC_ACROSS] = "electric_across.svg",
         [PLANE_MAGNETIC_ALONG] = "magnetic_along.svg",
         [PLANE_MAGNETIC_ACROSS] = "magnetic_across.svg",
+        [PLANE_ELECTRIC_TURNED] = "electric_turned.svg",
     };
     return names[kind];
 }
@@ -133,17 +135,20 @@ enum status plot_plane_potential(struct folder *folder, enum plane_kind kind,
     return status;
 }
 
+/* Lines within the region as drawn. */
 static void print_grid_lines(struct sink *script, const struct grid *grid)
 {
-    double low_a = grid->a[0] * 1e3, high_a = grid->a[grid->na - 1] * 1e3;
-    double low_b = grid->b[0] * 1e3, high_b = grid->b[grid->nb - 1] * 1e3;
+    const struct grid_window w = grid_drawn(grid);
+    const double *a = grid->a + w.first_a, *b = grid->b + w.first_b;
+    double low_a = a[0] * 1e3, high_a = a[w.na - 1] * 1e3;
+    double low_b = b[0] * 1e3, high_b = b[w.nb - 1] * 1e3;
     sink_print(script, "$grid << EOD\n");
-    for (int i = 0; i < grid->na; i++)
-        sink_print(script, "%.9g %.9g\n%.9g %.9g\n\n", grid->a[i] * 1e3, low_b,
-                   grid->a[i] * 1e3, high_b);
-    for (int j = 0; j < grid->nb; j++)
-        sink_print(script, "%.9g %.9g\n%.9g %.9g\n\n", low_a, grid->b[j] * 1e3, high_a,
-                   grid->b[j] * 1e3);
+    for (int i = 0; i < w.na; i++)
+        sink_print(script, "%.9g %.9g\n%.9g %.9g\n\n", a[i] * 1e3, low_b, a[i] * 1e3,
+                   high_b);
+    for (int j = 0; j < w.nb; j++)
+        sink_print(script, "%.9g %.9g\n%.9g %.9g\n\n", low_a, b[j] * 1e3, high_a,
+                   b[j] * 1e3);
     sink_print(script, "EOD\n");
 }
 

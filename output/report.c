@@ -11,8 +11,12 @@
 #include <string.h>
 
 #include "output/number.h"
+#include "output/plot_convergence.h"
 #include "output/words.h"
 #include "shared/mem.h"
+#include "solver/figures_conductor.h"
+
+#define MATRIX_NAME 256
 
 static const char style[] =
     "body{font-family:sans-serif;max-width:70em;margin:2em auto;padding:0 1em;"
@@ -76,6 +80,18 @@ static void print_limits(struct sink *sink, const struct verdict *verdict)
     sink_print(sink, "</table>\n");
 }
 
+static void print_field_cautions(struct sink *sink, const struct cautions *cautions)
+{
+    if (cautions->count == 0)
+        return;
+    sink_print(sink, "<h2>Cautions on these fields</h2>\n<ul>\n");
+    for (size_t k = 0; k < cautions->count; k++) {
+        print_element(sink, "li", cautions->items[k].text);
+        sink_print(sink, "\n");
+    }
+    sink_print(sink, "</ul>\n<p>%s</p>\n", CAUTIONS_STANDING);
+}
+
 static void print_planes(struct sink *sink, unsigned planes)
 {
     const char *gap = "";
@@ -116,6 +132,49 @@ static bool has_group(const struct figures *figures, int group)
     return false;
 }
 
+static bool is_in_matrix(const struct figure *figure)
+{
+    return strcmp(figure->name, "capacitance_matrix") == 0 &&
+           figure->state != FIGURE_MISSING;
+}
+
+static void print_entry(struct sink *sink, const struct figure *entry)
+{
+    char value[NUMBER_TEXT] = "missing";
+    if (entry->state != FIGURE_MISSING)
+        number_quantity(entry->value, entry->uncertainty, entry->unit, value,
+                        sizeof value);
+    sink_print(sink, "<td class=\"n\">%s%s</td>", value,
+               entry->state == FIGURE_UNSETTLED ? " unsettled" : "");
+}
+
+static void print_matrix(struct sink *sink, const struct figures *figures,
+                         enum plane_kind kind)
+{
+    struct matrix_view view;
+    char name[MATRIX_NAME];
+    if (!matrix_find(figures, kind, &view))
+        return;
+    sink_print(sink,
+               "<p>%s, capacitance matrix: charge of one conductor per volt on "
+               "another, all else earthed</p>\n<table>\n<tr><th></th>",
+               plane_kind_key(kind));
+    for (size_t j = 0; j < view.count; j++) {
+        matrix_name(&view, j, name, sizeof name);
+        print_element(sink, "th", name);
+    }
+    sink_print(sink, "</tr>\n");
+    for (size_t i = 0; i < view.count; i++) {
+        matrix_name(&view, i, name, sizeof name);
+        sink_print(sink, "<tr>");
+        print_element(sink, "th", name);
+        for (size_t j = 0; j < view.count; j++)
+            print_entry(sink, matrix_entry(&view, i, j));
+        sink_print(sink, "</tr>\n");
+    }
+    sink_print(sink, "</table>\n");
+}
+
 static void print_figures(struct sink *sink, const struct figures *figures)
 {
     for (int group = 0; group < FIGURE_GROUPS; group++) {
@@ -126,9 +185,12 @@ static void print_figures(struct sink *sink, const struct figures *figures)
                          "<th>planes</th><th>note</th></tr>\n");
         for (size_t k = 0; k < figures->count; k++)
             if ((int)figures->items[k].group == group &&
-                !words_is_zero_term(&figures->items[k]))
+                !words_is_zero_term(&figures->items[k]) &&
+                !is_in_matrix(&figures->items[k]))
                 print_figure(sink, &figures->items[k]);
         sink_print(sink, "</table>\n");
+        for (int k = 0; group == FIGURE_HARDWARE && k < PLANE_KINDS; k++)
+            print_matrix(sink, figures, (enum plane_kind)k);
     }
 }
 
@@ -180,6 +242,8 @@ static enum status print_picture(struct sink *sink, const struct folder *folder,
         sink_print(sink, "<p><img alt=\"%s\" src=\"data:image/svg+xml;base64,", name);
         status = print_file(sink, file, path, messages);
         sink_print(sink, "\"></p>\n");
+        if (words_picture(name))
+            print_element(sink, "p", words_picture(name));
         (void)fclose(file);
     } else {
         messages_add(messages, SEVERITY_ERROR, (struct place){0, 0},
@@ -195,18 +259,29 @@ static bool is_picture(const char *name)
     return length > 4 && strcmp(name + length - 4, ".svg") == 0;
 }
 
+/* The pictures that come first, in this order. */
+static const char *const first_pictures[] = {"path.svg", "ratio_map.svg",
+                                             "convergence.svg"};
+#define FIRST_PICTURES (sizeof first_pictures / sizeof first_pictures[0])
+
+static bool comes_first(const char *name)
+{
+    for (size_t f = 0; f < FIRST_PICTURES; f++)
+        if (strcmp(name, first_pictures[f]) == 0)
+            return true;
+    return false;
+}
+
 static enum status print_pictures(struct sink *sink, const struct folder *folder,
                                   struct messages *messages)
 {
-    static const char *const first[] = {"path.svg", "ratio_map.svg"};
     enum status status = STATUS_OK;
-    for (size_t f = 0; f < 2; f++)
+    for (size_t f = 0; f < FIRST_PICTURES; f++)
         for (size_t k = 0; !status && k < folder->count; k++)
-            if (strcmp(folder->names[k], first[f]) == 0)
-                status = print_picture(sink, folder, first[f], messages);
+            if (strcmp(folder->names[k], first_pictures[f]) == 0)
+                status = print_picture(sink, folder, first_pictures[f], messages);
     for (size_t k = 0; !status && k < folder->count; k++)
-        if (is_picture(folder->names[k]) && strcmp(folder->names[k], first[0]) != 0 &&
-            strcmp(folder->names[k], first[1]) != 0)
+        if (is_picture(folder->names[k]) && !comes_first(folder->names[k]))
             status = print_picture(sink, folder, folder->names[k], messages);
     return status;
 }
@@ -225,6 +300,26 @@ static void print_trust(struct sink *sink, const struct result *result)
     sink_print(sink, "</ul>\n");
 }
 
+/* Says why a picture that is always looked for is not there. */
+static void print_no_convergence(struct sink *sink, const struct result *result)
+{
+    const struct figure *chosen[CONVERGENCE_MOST];
+    if (convergence_choose(result, chosen) == 0)
+        sink_print(sink, "<p>There is no convergence plot: no main figure changes from "
+                         "grid to grid.</p>\n");
+}
+
+static void print_accuracy(struct sink *sink, const struct accuracy *accuracy)
+{
+    char line[1024];
+    if (accuracy->state == ACCURACY_NOT_ASKED)
+        return;
+    accuracy_sentence(accuracy, line, sizeof line);
+    sink_print(sink, "<p>Accuracy asked for: ");
+    print_text(sink, line);
+    sink_print(sink, "</p>\n");
+}
+
 static void print_head(struct sink *sink, const struct result *result)
 {
     const char *title = result->geometry->title;
@@ -238,13 +333,18 @@ static void print_head(struct sink *sink, const struct result *result)
     sink_print(sink, "\n<p class=\"verdict\">Verdict: %s</p>\n", line);
     if (result->verdict.count)
         print_limits(sink, &result->verdict);
+    print_accuracy(sink, &result->accuracy);
+    print_field_cautions(sink, &result->cautions);
     sink_print(sink, "<p>Geometry file ");
     print_text(sink, words_base_name(result->geometry->path));
     sink_print(sink,
                ", evengap %s. x along the electric field, y from pole to pole, z "
-               "along the beam. 1.234(5) means 1.234 with an uncertainty of "
+               "along the beam%s. 1.234(5) means 1.234 with an uncertainty of "
                "0.005.</p>\n",
-               EVENGAP_VERSION);
+               EVENGAP_VERSION,
+               result->planes[PLANE_ELECTRIC_TURNED].present
+                   ? ", r the distance from the axis z"
+                   : "");
 }
 
 enum status report_write(struct folder *folder, const struct result *result,
@@ -256,6 +356,7 @@ enum status report_write(struct folder *folder, const struct result *result,
         return status;
     print_head(&sink, result);
     status = print_pictures(&sink, folder, messages);
+    print_no_convergence(&sink, result);
     print_figures(&sink, &result->figures);
     print_trust(&sink, result);
     sink_print(&sink, "</body>\n</html>\n");

@@ -12,6 +12,7 @@
 #include "output/lattice_map.h"
 #include "output/path_csv.h"
 #include "output/plane_vtk.h"
+#include "output/plot_convergence.h"
 #include "output/plot_path.h"
 #include "output/plot_plane.h"
 #include "output/plot_section.h"
@@ -116,6 +117,8 @@ static enum status write_all(struct folder *folder, const struct result *result,
         status = write_path(folder, result, messages);
     if (!status)
         status = plot_section(folder, result, &drawn, messages);
+    if (!status)
+        status = plot_convergence(folder, result, &drawn, messages);
     if (!status)
         status = write_lattice(folder, &result->lattice, messages);
     if (!status)

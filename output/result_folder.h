@@ -13,9 +13,9 @@
 #define DRAWING_KIND "drawing"
 
 /** Writes the result folder at `path`: <plane>.vtk and <plane>.svg for every plane,
- *  path.csv and path.svg, ratio_map.svg, lattice.vtk and lattice.csv (each where there
- *  is something to write), sheet.txt, report.html, summary.json. On any failure a
- *  previous folder is left as it was. STATUS_WRITE or STATUS_UNTRUSTED with a message,
+ *  path.csv and path.svg, ratio_map.svg, convergence.svg, lattice.vtk and lattice.csv
+ *  (each where there is something to write), sheet.txt, report.html, summary.json. On any
+ *  failure a previous folder is left as it was. STATUS_WRITE or STATUS_UNTRUSTED with a message,
  *  STATUS_MEMORY. */
 enum status result_folder_write(const struct result *result, const char *path,
                                 struct messages *messages) MUST_CHECK;

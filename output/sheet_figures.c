@@ -7,6 +7,7 @@
 #include <string.h>
 
 #include "output/number.h"
+#include "output/sheet_conductors.h"
 #include "output/sheet_layout.h"
 #include "output/words.h"
 
@@ -44,7 +45,8 @@ static bool is_enge_term(const struct figure *figure)
 static bool is_line(const struct figure *figure)
 {
     return figure->state != FIGURE_MISSING && !is_expansion(figure) &&
-           !is_part_figure(figure) && !is_enge(figure);
+           !is_part_figure(figure) && !is_enge(figure) &&
+           !sheet_is_conductor_figure(figure);
 }
 
 static void value_text(const struct figure *figure, char *text, size_t size)
@@ -204,12 +206,17 @@ static bool same_part(const struct figure *p, const struct figure *q)
            strcmp(p->subject, q->subject) == 0;
 }
 
-static void write_table_head(struct sink *sink, const struct figure *figure)
+static enum plane_kind first_plane(const struct figure *figure)
 {
     unsigned plane = 0;
     while (plane + 1 < PLANE_KINDS && !(figure->planes & (1U << plane)))
         plane++;
-    sink_print(sink, "  %-*s", PART_COLUMN - 2, plane_kind_key((enum plane_kind)plane));
+    return (enum plane_kind)plane;
+}
+
+static void write_table_head(struct sink *sink, const struct figure *figure)
+{
+    sink_print(sink, "  %-*s", PART_COLUMN - 2, plane_kind_key(first_plane(figure)));
     if (named(figure, "charge"))
         sink_print(sink, "%-*s%-*s%s\n", CELL_COLUMN, "charge", CELL_COLUMN,
                    "capacitance", "peak surface field");
@@ -257,18 +264,19 @@ static size_t write_part(struct sink *sink, const struct figures *figures, size_
 static void write_parts(struct sink *sink, const struct figures *figures)
 {
     unsigned planes = 0;
-    bool opened = false;
+    bool planar = false, turned = false;
     for (size_t k = 0; k < figures->count;) {
         const struct figure *figure = &figures->items[k];
         if (!is_part_figure(figure) || !figure->subject) {
             k++;
             continue;
         }
-        if (!opened)
+        bool *told = plane_kind_is_turned(first_plane(figure)) ? &turned : &planar;
+        if (!*told)
             sink_print(sink,
-                       "  Per metre of depth; capacitance of a part to everything "
-                       "else, earthed.\n");
-        opened = true;
+                       "  %s; capacitance of a part to everything else, earthed.\n",
+                       told == &turned ? "Of whole rings" : "Per metre of depth");
+        *told = true;
         if (figure->planes != planes)
             write_table_head(sink, figure);
         planes = figure->planes;
@@ -279,11 +287,22 @@ static void write_parts(struct sink *sink, const struct figures *figures)
 static bool same_reason(const struct figure *p, const struct figure *q)
 {
     return p->group == q->group && q->state == FIGURE_MISSING && !is_part_figure(q) &&
-           !is_enge_term(q) &&
+           !is_enge_term(q) && !sheet_is_conductor_figure(q) &&
            strcmp(p->note ? p->note : "", q->note ? q->note : "") == 0;
 }
 
-/* Every figure of the group that is missing for the reason of figure k. */
+/* True if the group holds anything but missing figures: then it matters which they are. */
+static bool has_figures(const struct figures *figures, enum figure_group group)
+{
+    for (size_t k = 0; k < figures->count; k++)
+        if (figures->items[k].group == group &&
+            figures->items[k].state != FIGURE_MISSING)
+            return true;
+    return false;
+}
+
+/* The reason of figure k, and every figure of the group that is missing for it, unless
+ * all are missing. */
 static void write_missing(struct sink *sink, const struct figures *figures, size_t k)
 {
     const struct figure *first = &figures->items[k];
@@ -292,6 +311,8 @@ static void write_missing(struct sink *sink, const struct figures *figures, size
             same_reason(first, &figures->items[p]))
             return; /* told already */
     sink_print(sink, "  missing: %s\n", first->note ? first->note : "not computed");
+    if (!has_figures(figures, first->group))
+        return;
     char text[8 * SHEET_TEXT];
     size_t used = 0;
     text[0] = '\0';
@@ -324,12 +345,15 @@ static void write_group(struct sink *sink, const struct figures *figures,
         write_enge(sink, figures);
     if (group == FIGURE_ACROSS)
         write_expansions(sink, figures);
-    if (group == FIGURE_HARDWARE)
+    if (group == FIGURE_HARDWARE) {
         write_parts(sink, figures);
+        sheet_conductors(sink, figures);
+    }
     for (size_t k = 0; k < figures->count; k++)
         if (figures->items[k].group == group &&
             figures->items[k].state == FIGURE_MISSING &&
-            !is_part_figure(&figures->items[k]) && !is_enge_term(&figures->items[k]))
+            !is_part_figure(&figures->items[k]) && !is_enge_term(&figures->items[k]) &&
+            !sheet_is_conductor_figure(&figures->items[k]))
             write_missing(sink, figures, k);
 }
 

@@ -11,8 +11,11 @@
 
 #include "output/words.h"
 #include "shared/mem.h"
+#include "solver/figures_conductor.h"
 
-#define DIGITS 16
+#define DIGITS      16
+#define MATRIX_NAME 256
+#define SENTENCE    1000
 
 struct builder {
     bool failed;
@@ -119,6 +122,19 @@ static void put_verdict(struct builder *builder, json_t *root,
         put_limit(builder, array, &verdict->items[k]);
 }
 
+static void put_cautions(struct builder *builder, json_t *root,
+                         const struct cautions *cautions)
+{
+    json_t *array = put_array(builder, root, "cautions");
+    for (size_t k = 0; k < cautions->count; k++) {
+        const struct caution *caution = &cautions->items[k];
+        json_t *object = append(builder, array, json_object());
+        put(builder, object, "figure", text(caution->figure));
+        put(builder, object, "subject", text(caution->subject));
+        put(builder, object, "text", text(caution->text));
+    }
+}
+
 static void put_quality(struct builder *builder, json_t *array,
                         const struct quality *quality)
 {
@@ -129,9 +145,48 @@ static void put_quality(struct builder *builder, json_t *array,
     put(builder, object, "flux_imbalance", real(quality->flux_imbalance, true));
 }
 
-static void put_plane(struct builder *builder, json_t *array, enum plane_kind kind,
-                      const struct plane_result *plane)
+static void put_open(struct builder *builder, json_t *plane,
+                     const struct open_test *open)
 {
+    json_t *object = put_object(builder, plane, "open_sides");
+    put(builder, object, "distance", real(open->distance, true));
+    put(builder, object, "grid", json_integer(open->level + 1));
+    put(builder, object, "largest_movement", real(open->moved, true));
+    put(builder, object, "of_figure", text(open->moved_most));
+    put(builder, object, "factor", real(open->factor, true));
+    put(builder, object, "unsettled", json_integer(open->unsettled));
+}
+
+static void put_matrix(struct builder *builder, json_t *plane,
+                       const struct matrix_view *view, const struct quality *quality)
+{
+    json_t *object = put_object(builder, plane, "capacitance_matrix");
+    json_t *names = put_array(builder, object, "conductors");
+    put(builder, object, "unit", text(view->first->unit));
+    json_t *values = put_array(builder, object, "value");
+    json_t *errors = put_array(builder, object, "uncertainty");
+    for (size_t i = 0; i < view->count; i++) {
+        char name[MATRIX_NAME];
+        matrix_name(view, i, name, sizeof name);
+        (void)append(builder, names, text(name));
+        json_t *value_row = append(builder, values, json_array());
+        json_t *error_row = append(builder, errors, json_array());
+        for (size_t j = 0; j < view->count; j++) {
+            const struct figure *entry = matrix_entry(view, i, j);
+            const bool known = entry->state != FIGURE_MISSING;
+            (void)append(builder, value_row, real(entry->value, known));
+            (void)append(builder, error_row, real(entry->uncertainty, known));
+        }
+    }
+    put(builder, object, "reciprocity", real(quality->reciprocity, true));
+    put(builder, object, "row_sum", real(quality->row_sum, true));
+}
+
+static void put_plane(struct builder *builder, json_t *array, enum plane_kind kind,
+                      const struct result *result)
+{
+    const struct plane_result *plane = &result->planes[kind];
+    struct matrix_view matrix;
     json_t *object = append(builder, array, json_object());
     put(builder, object, "plane", text(plane_kind_key(kind)));
     json_t *axes = put_array(builder, object, "axes");
@@ -143,6 +198,56 @@ static void put_plane(struct builder *builder, json_t *array, enum plane_kind ki
     json_t *levels = put_array(builder, object, "levels");
     for (int k = 0; k < plane->levels; k++)
         put_quality(builder, levels, &plane->quality[k]);
+    if (matrix_find(&result->figures, kind, &matrix))
+        put_matrix(builder, object, &matrix, &plane->quality[plane->levels - 1]);
+    if (plane->open.done)
+        put_open(builder, object, &plane->open);
+}
+
+static void put_refined(struct builder *builder, json_t *array, enum plane_kind kind,
+                        const struct accuracy_plane *plane)
+{
+    json_t *object = append(builder, array, json_object());
+    put(builder, object, "plane", text(plane_kind_key(kind)));
+    put(builder, object, "all_lines", real(plane->factor, true));
+    json_t *parts = put_array(builder, object, "parts");
+    for (size_t k = 0; k < plane->part_count; k++) {
+        json_t *part = append(builder, parts, json_object());
+        put(builder, part, "name", text(plane->parts[k].name));
+        put(builder, part, "factor", real(plane->parts[k].factor, true));
+    }
+}
+
+/* null where no accuracy was asked for. */
+static void put_accuracy(struct builder *builder, json_t *root,
+                         const struct result *result)
+{
+    const struct accuracy *accuracy = &result->accuracy;
+    char sentence[SENTENCE];
+    if (accuracy->state == ACCURACY_NOT_ASKED) {
+        put(builder, root, "accuracy", json_null());
+        return;
+    }
+    json_t *object = put_object(builder, root, "accuracy");
+    accuracy_sentence(accuracy, sentence, sizeof sentence);
+    put(builder, object, "within", real(accuracy->within, true));
+    put(builder, object, "state", text(accuracy_key(accuracy->state)));
+    put(builder, object, "text", text(sentence));
+    put(builder, object, "of_limits", json_boolean(accuracy->of_limits));
+    put(builder, object, "rounds", json_integer(accuracy->rounds));
+    json_t *items = put_array(builder, object, "figures");
+    for (size_t k = 0; k < accuracy->count; k++) {
+        const struct accuracy_item *item = &accuracy->items[k];
+        json_t *entry = append(builder, items, json_object());
+        put(builder, entry, "name", text(item->name));
+        put(builder, entry, "reached", real(item->reached, item->stands));
+        put(builder, entry, "relative_to", text(item->of_limit ? "limit" : "value"));
+        put(builder, entry, "met", json_boolean(item->met));
+    }
+    json_t *planes = put_array(builder, object, "refined");
+    for (int k = 0; k < PLANE_KINDS; k++)
+        if (result->planes[k].present)
+            put_refined(builder, planes, (enum plane_kind)k, &accuracy->planes[k]);
 }
 
 static void put_figure(struct builder *builder, json_t *array,
@@ -162,6 +267,9 @@ static void put_figure(struct builder *builder, json_t *array,
             (void)append(builder, planes, text(plane_kind_key((enum plane_kind)k)));
     put(builder, object, "value", real(figure->value, known));
     put(builder, object, "uncertainty", real(figure->uncertainty, known));
+    json_t *grids = put_array(builder, object, "grids");
+    for (int k = 0; k < figure->grid_count; k++)
+        (void)append(builder, grids, real(figure->grids[k], true));
     put(builder, object, "unit", text(figure->unit));
     put(builder, object, "state", text(words_state(figure->state)));
     put(builder, object, "note", text(figure->note));
@@ -230,10 +338,12 @@ enum status summary_write(struct sink *sink, const struct result *result,
     json_t *root = json_object();
     put_head(&builder, root, "summary", geometry);
     put_verdict(&builder, root, &result->verdict);
+    put_cautions(&builder, root, &result->cautions);
+    put_accuracy(&builder, root, result);
     json_t *planes = put_array(&builder, root, "planes");
     for (int k = 0; k < PLANE_KINDS; k++)
         if (result->planes[k].present)
-            put_plane(&builder, planes, (enum plane_kind)k, &result->planes[k]);
+            put_plane(&builder, planes, (enum plane_kind)k, result);
     json_t *figures = put_array(&builder, root, "figures");
     for (size_t k = 0; k < result->figures.count; k++)
         put_figure(&builder, figures, &result->figures.items[k]);

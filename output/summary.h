@@ -18,13 +18,25 @@
  *                  "at_least", "allowed", "unit", "figure": name or null,
  *                  "value", "uncertainty" (null when not judged), "judged", "met",
  *                  "reason"} ] },
+ *   "accuracy": null, or if one was asked for {"within", "state": "met", "memory" (the
+ *                budget is spent), "slow" (refining no longer helps), "rounds" (all are
+ *                spent), "unsettled" (figures that do not stand), "unsolved" or
+ *                "no_figure", "text": the same in words, "of_limits", "rounds",
+ *                "figures": [ {"name", "reached": uncertainty relative to the limit or
+ *                the value, null if the figure does not stand, "relative_to": "limit" or
+ *                "value", "met"} ], "refined": [ {"plane", "all_lines": factor,
+ *                "parts": [ {"name", "factor"} ]} ]},
  *   "planes": [ {"plane": key, "axes": ["z", "x"], "grid": [lines along each axis, of
  *                the finest grid], "levels": [ coarse to fine: {"unknowns",
- *                "residual", "reciprocal_condition", "flux_imbalance"} ]} ],
+ *                "residual", "reciprocal_condition", "flux_imbalance"} ],
+ *                "capacitance_matrix" (if there are 2 to 8 conductors): {
+ *                "conductors": [names], "unit", "value": [ rows ], "uncertainty":
+ *                [ rows ], "reciprocity", "row_sum" (result.h)}} ],
  *   "figures": [ {"name", "title", "subject": part or supply or null, "group": "beam",
  *                 "along", "across" or "hardware", "planes": [keys], "value",
- *                 "uncertainty", "unit", "state": "good", "unsettled" or "missing",
- *                 "note": text or null} ],
+ *                 "uncertainty", "grids": [values on the grids of the family, coarse to
+ *                 fine; empty when missing or from the input alone], "unit", "state":
+ *                 "good", "unsettled" or "missing", "note": text or null} ],
  *   "probes": [ {"index": from 0, as listed in the geometry file, "plane", "place":
  *                {"z": m, "x": m}, "potential", "potential_uncertainty",
  *                "potential_unit", "field": {"z": .., "x": ..}, "field_uncertainty":

@@ -63,6 +63,9 @@ const char *words_assumption(enum plane_kind kind)
             "longer than about three gaps, away from their ends; no current flows in "
             "the gap, and the poles are infinitely permeable and hold fixed "
             "ampere-turns",
+        [PLANE_ELECTRIC_TURNED] =
+            "the parts are taken as round about the axis z, the same at every angle: "
+            "nothing that breaks the circle (leads, slits, posts) is seen",
     };
     return texts[kind];
 }
@@ -70,6 +73,17 @@ const char *words_assumption(enum plane_kind kind)
 const char *words_potential(enum plane_kind kind)
 {
     return plane_kind_is_magnetic(kind) ? "magnetic potential (A)" : "potential (V)";
+}
+
+const char *words_picture(const char *name)
+{
+    if (strcmp(name, "convergence.svg") == 0)
+        return "Convergence: a figure can be trusted where its points fall towards the "
+               "left along the thin line of slope 2. The coarsest grid is the test: "
+               "the "
+               "final value was extrapolated from the two finest. The bar at the left "
+               "is the uncertainty stated with it.";
+    return NULL;
 }
 
 const char *words_caution(size_t k)

@@ -24,6 +24,10 @@ const char *words_state(enum figure_state state);
 /** What solving this plane in two dimensions takes for granted. */
 const char *words_assumption(enum plane_kind kind);
 
+/** How to read a picture of the result folder, one or two sentences; NULL where it
+ *  explains itself. */
+const char *words_picture(const char *name);
+
 /** What the node potential of a plane is called, with its unit. */
 const char *words_potential(enum plane_kind kind);
 

@@ -36,7 +36,7 @@ static enum status combine_one(const struct figures *levels, int count, size_t k
 {
     const struct figure *finest = &levels[count - 1].items[k];
     struct figure figure = *finest;
-    double values[3];
+    double *const values = figure.grids;
     char note[NOTE_SIZE];
     const struct figure *missing = missing_on(levels, count, k);
     if (missing != NULL) {
@@ -57,6 +57,7 @@ static enum status combine_one(const struct figures *levels, int count, size_t k
     const bool exact = figure.planes == 0;
     figure.value = exact ? finest->value : e.value;
     figure.uncertainty = exact ? 0.0 : e.uncertainty;
+    figure.grid_count = exact ? 0 : count;
     if (e.settled)
         return figures_add(combined, &figure, finest->subject, finest->note);
     figure.state = FIGURE_UNSETTLED;

@@ -1,164 +1,32 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later */
 
-/* A fit sees the nodes it can reach from its own node along whole legs within a window
- * of a few lines, and the surface points where those legs end; what lies behind a thin
- * part is not seen. Node indices may run over a symmetry side: they are folded back,
- * with the sign of the symmetry. */
+/* Every node a point needs gets its fit when first asked for (field_window.h,
+ * local_fit.h); the corners of the point's cell that see it are blended. */
 
 #include "solver/field.h"
 
 #include <math.h>
-#include <string.h>
 
+#include "mesh/medium.h"
 #include "shared/mem.h"
-#include "solver/harmonic_fit.h"
-#include "solver/stencil.h"
+#include "solver/field_sight.h"
+#include "solver/field_window.h"
+#include "solver/local_fit.h"
 
-enum {
-    WINDOW = 3, /* lines seen to each side */
-    WINDOW_SIDE = 2 * WINDOW + 1,
-    WINDOW_NODES = WINDOW_SIDE * WINDOW_SIDE,
-    POINTS_MAX = WINDOW_NODES * LEG_COUNT + 1, /* nodes and the ends of their legs */
-    SEARCH = 4                                 /* how far to look for a free node */
-};
+enum { SEARCH = 4 }; /* how far to look for a free node */
 
 struct field {
     const struct grid *grid;
     const double *phi;
     const double *part_value;
-    int *fit_of;           /* [nb*na] index into fits, -1 not made yet */
-    struct harmonic *fits; /* [fit_count] */
+    int *fit_of;            /* [nb*na] index into fits, -1 not made yet */
+    struct local_fit *fits; /* [fit_count] */
     int fit_count;
     size_t fit_capacity;
-    double *work;       /* scratch of harmonic_fit */
-    struct span *spans; /* scratch of line_is_clear */
-    size_t span_capacity;
+    double *work;                 /* scratch of local_fit_make */
+    struct turned_radial *radial; /* NULL in a planar plane */
+    struct field_sight sight;
 };
-
-/* A node of the region or of one of its reflections. */
-struct folded {
-    int node; /* -1 outside */
-    double a, b;
-    double sign; /* of the potential */
-};
-
-static bool side_reflects(const struct grid *grid, enum side_index side)
-{
-    return grid->plane->sides[side].kind != SIDE_WALL;
-}
-
-/* Folds index k of an axis; *at becomes its coordinate. False outside the region. */
-static bool fold_axis(const struct grid *grid, bool second, int *k, double *at,
-                      double *sign)
-{
-    const double *lines = second ? grid->b : grid->a;
-    const int last = (second ? grid->nb : grid->na) - 1;
-    const enum side_index low = second ? SIDE_B_LOW : SIDE_A_LOW;
-    const enum side_index high = second ? SIDE_B_HIGH : SIDE_A_HIGH;
-    if (*k >= 0 && *k <= last) {
-        *at = lines[*k];
-        return true;
-    }
-    const enum side_index side = *k < 0 ? low : high;
-    const int mirrored = *k < 0 ? -*k : 2 * last - *k;
-    if (!side_reflects(grid, side) || mirrored < 0 || mirrored > last)
-        return false;
-    const double axis = lines[*k < 0 ? 0 : last];
-    *at = 2.0 * axis - lines[mirrored];
-    if (grid->plane->sides[side].kind == SIDE_ANTIMIRROR)
-        *sign = -*sign;
-    *k = mirrored;
-    return true;
-}
-
-static struct folded fold_node(const struct grid *grid, int i, int j)
-{
-    struct folded f = {-1, 0.0, 0.0, 1.0};
-    if (fold_axis(grid, false, &i, &f.a, &f.sign) &&
-        fold_axis(grid, true, &j, &f.b, &f.sign))
-        f.node = j * grid->na + i;
-    return f;
-}
-
-/* Free nodes, and nodes of an antimirror side: the field goes on behind it. */
-static bool passable(const struct grid *grid, int node)
-{
-    const int owner = grid->owner[node];
-    return owner == OWNER_FREE ||
-           (owner < OWNER_FREE &&
-            grid->plane->sides[OWNER_SIDE - owner].kind == SIDE_ANTIMIRROR);
-}
-
-/* Window round a node: which nodes are reached, and the points collected. */
-struct view {
-    const struct field *field;
-    int i, j; /* centre */
-    char seen[WINDOW_NODES];
-    int stack[WINDOW_NODES];
-    int depth;
-    struct fit_point points[POINTS_MAX];
-    int count;
-};
-
-static double weight_of(int di, int dj)
-{
-    return 1.0 / (1.0 + di * di + dj * dj);
-}
-
-static void view_add(struct view *view, double a, double b, double value, double weight)
-{
-    view->points[view->count++] = (struct fit_point){{a, b}, value, weight};
-}
-
-static void view_push(struct view *view, int di, int dj)
-{
-    const int slot = (dj + WINDOW) * WINDOW_SIDE + di + WINDOW;
-    if (di < -WINDOW || di > WINDOW || dj < -WINDOW || dj > WINDOW || view->seen[slot])
-        return;
-    view->seen[slot] = 1;
-    view->stack[view->depth++] = slot;
-}
-
-/* The leg of a reached node, seen in the direction (si, sj) of the unfolded plane. In a
- * reflected part of the plane the leg of the folded node points the other way. */
-static void view_leg(struct view *view, const struct folded *from, int di, int dj,
-                     int si, int sj)
-{
-    static const enum leg legs[2][2] = {{LEG_WEST, LEG_EAST}, {LEG_SOUTH, LEG_NORTH}};
-    const struct grid *grid = view->field->grid;
-    const struct folded to = fold_node(grid, view->i + di + si, view->j + dj + sj);
-    if (to.node < 0)
-        return;
-    const int axis = sj != 0;
-    const int step = to.node - from->node;
-    const enum leg leg = legs[axis][step > 0];
-    const double weight = weight_of(di + si, dj + sj);
-    const struct cut *cut = grid_cut(grid, from->node, leg);
-    if (cut != NULL) {
-        view_add(view, from->a + si * cut->length, from->b + sj * cut->length,
-                 from->sign * view->field->part_value[cut->part], weight);
-    } else if (passable(grid, to.node)) {
-        view_push(view, di + si, dj + sj);
-    } else {
-        view_add(view, to.a, to.b, to.sign * view->field->phi[to.node], weight);
-    }
-}
-
-static void view_collect(struct view *view)
-{
-    const struct field *field = view->field;
-    view_push(view, 0, 0);
-    while (view->depth > 0) {
-        const int slot = view->stack[--view->depth];
-        const int di = slot % WINDOW_SIDE - WINDOW, dj = slot / WINDOW_SIDE - WINDOW;
-        const struct folded at = fold_node(field->grid, view->i + di, view->j + dj);
-        view_add(view, at.a, at.b, at.sign * field->phi[at.node], weight_of(di, dj));
-        view_leg(view, &at, di, dj, -1, 0);
-        view_leg(view, &at, di, dj, 1, 0);
-        view_leg(view, &at, di, dj, 0, -1);
-        view_leg(view, &at, di, dj, 0, 1);
-    }
-}
 
 static enum status fits_grow(struct field *field)
 {
@@ -171,19 +39,21 @@ static enum status fits_grow(struct field *field)
 
 /* The fit of a node, made when first asked for. */
 static enum status fit_of_node(struct field *field, int node,
-                               const struct harmonic **fit)
+                               const struct local_fit **fit)
 {
-    const struct grid *grid = field->grid;
     *fit = NULL;
     if (field->fit_of[node] < 0) {
-        struct view view = {.field = field, .i = node % grid->na, .j = node / grid->na};
+        struct field_window window;
         enum status status = fits_grow(field);
         if (status != STATUS_OK)
             return status;
-        view_collect(&view);
-        const struct vec2 centre = {grid->a[view.i], grid->b[view.j]};
-        status = harmonic_fit(view.points, view.count, centre, field->work,
-                              &field->fits[field->fit_count]);
+        field_window_collect(field->grid, field->phi, field->part_value, node, &window);
+        /* The term that is not harmonic pays beside surfaces only: in the open it costs
+         * accuracy where cells are large (five times on the axis of the model plates). */
+        const bool exact = window.mixed || !window.bounded;
+        status =
+            local_fit_make(field->radial, window.points, window.count, window.centre,
+                           exact, field->work, &field->fits[field->fit_count]);
         if (status != STATUS_OK)
             return status;
         field->fit_of[node] = field->fit_count++;
@@ -206,11 +76,11 @@ struct blend {
     struct vec2 value_slope;
 };
 
-static void blend_add(struct blend *blend, const struct harmonic *fit, struct vec2 at,
+static void blend_add(struct blend *blend, const struct local_fit *fit, struct vec2 at,
                       double weight, struct vec2 slope)
 {
     struct vec2 gradient;
-    const double value = harmonic_value(fit, at, &gradient);
+    const double value = local_fit_value(fit, at, &gradient);
     blend->weight += weight;
     blend->weight_slope = vec2_add(blend->weight_slope, slope);
     blend->value += weight * value;
@@ -218,103 +88,14 @@ static void blend_add(struct blend *blend, const struct harmonic *fit, struct ve
     blend->value_slope.b += slope.b * value + weight * gradient.b;
 }
 
-/* True if no part lies on the grid-parallel stretch from t0 to t1 of the line b = at
- * (axis 0) or a = at (axis 1). */
-static enum status line_is_clear(struct field *field, int axis, double at, double t0,
-                                 double t1, bool *clear)
-{
-    const struct plane *plane = field->grid->plane;
-    const double low = fmin(t0, t1), high = fmax(t0, t1);
-    const double size = vec2_length(vec2_sub(plane->high, plane->low));
-    enum status status = STATUS_OK;
-    *clear = true;
-    for (size_t p = 0; p < plane->part_count && *clear && status == STATUS_OK; p++) {
-        size_t count = 0;
-        status = shape_spans(&plane->parts[p].shape, axis, at, 1e-11 * size,
-                             &field->spans, &field->span_capacity, &count);
-        for (size_t k = 0; k < count && *clear; k++)
-            *clear = field->spans[k].low > high || field->spans[k].high < low;
-    }
-    return status;
-}
-
-/* True if a corner sees the point along one of the two grid-parallel ways round. */
-static enum status corner_sees(struct field *field, struct vec2 corner, struct vec2 at,
-                               bool *sees)
-{
-    bool first, second = false;
-    enum status status = line_is_clear(field, 0, corner.b, corner.a, at.a, &first);
-    if (status == STATUS_OK && first)
-        status = line_is_clear(field, 1, at.a, corner.b, at.b, &second);
-    *sees = first && second;
-    if (status != STATUS_OK || *sees)
-        return status;
-    status = line_is_clear(field, 1, corner.a, corner.b, at.b, &first);
-    if (status == STATUS_OK && first)
-        status = line_is_clear(field, 0, at.b, corner.a, at.a, &second);
-    *sees = first && second;
-    return status;
-}
-
-/* Free corners of cell (i, j) that are joined by whole edges of the cell carry the same
- * group number; group[c] is -1 at fixed corners. Returns the number of groups. */
-static int corner_groups(const struct grid *grid, int i, int j, int group[4])
-{
-    static const int edges[4][2] = {{0, 1}, {2, 3}, {0, 2}, {1, 3}};
-    static const enum leg legs[4] = {LEG_EAST, LEG_EAST, LEG_NORTH, LEG_NORTH};
-    int node[4], count = 0;
-    for (int c = 0; c < 4; c++) {
-        node[c] = (j + (c >> 1)) * grid->na + i + (c & 1);
-        group[c] = passable(grid, node[c]) ? c : -1;
-    }
-    for (int pass = 0; pass < 2; pass++)
-        for (int e = 0; e < 4; e++) {
-            const int p = edges[e][0], q = edges[e][1];
-            if (group[p] < 0 || group[q] < 0 ||
-                grid_cut(grid, node[p], legs[e]) != NULL)
-                continue;
-            const int least = group[p] < group[q] ? group[p] : group[q];
-            group[p] = group[q] = least;
-        }
-    for (int c = 0; c < 4; c++)
-        count += group[c] == c;
-    return count;
-}
-
-/* Which corners of a cell speak for a point: all free ones, or, where a thin part runs
- * through the cell, those that see the point. */
-static enum status choose_corners(struct field *field, struct vec2 at, int i, int j,
-                                  bool use[4])
-{
-    const struct grid *grid = field->grid;
-    int group[4];
-    const int groups = corner_groups(grid, i, j, group);
-    bool any = false;
-    for (int c = 0; c < 4; c++)
-        use[c] = group[c] >= 0;
-    if (groups < 2)
-        return STATUS_OK;
-    bool sees[4] = {false, false, false, false};
-    for (int c = 0; c < 4; c++) {
-        const struct vec2 corner = {grid->a[i + (c & 1)], grid->b[j + (c >> 1)]};
-        enum status status =
-            use[c] ? corner_sees(field, corner, at, &sees[c]) : STATUS_OK;
-        if (status != STATUS_OK)
-            return status;
-        any = any || sees[c];
-    }
-    for (int c = 0; c < 4 && any; c++)
-        use[c] = sees[c];
-    return STATUS_OK;
-}
-
-/* Adds corner (ci, cj) of cell (i, j). */
+/* Adds corner (ci, cj) of cell (i, j). On a surface the gradients alone are blended: where
+ * it runs close to a fixed node the slopes of the weights have no bound. */
 static enum status blend_corner(struct field *field, struct vec2 at, int i, int j,
-                                int ci, int cj, struct blend *blend)
+                                int ci, int cj, bool surface, struct blend *blend)
 {
     const struct grid *grid = field->grid;
     const int node = (j + cj) * grid->na + i + ci;
-    const struct harmonic *fit;
+    const struct local_fit *fit;
     enum status status = fit_of_node(field, node, &fit);
     if (status != STATUS_OK)
         return status;
@@ -323,12 +104,32 @@ static enum status blend_corner(struct field *field, struct vec2 at, int i, int 
     const double ta = (at.a - grid->a[i]) / ha, tb = (at.b - grid->b[j]) / hb;
     const double wa = fade(ci ? 1.0 - ta : ta, &da), wb = fade(cj ? 1.0 - tb : tb, &db);
     const struct vec2 slope = {(ci ? -da : da) / ha * wb, (cj ? -db : db) / hb * wa};
-    blend_add(blend, fit, at, wa * wb, slope);
+    blend_add(blend, fit, at, wa * wb, surface ? (struct vec2){0.0, 0.0} : slope);
     return STATUS_OK;
 }
 
+/* Medium of a point in cell (i, j): MEDIUM_MIXED if any may speak for it. */
+static int medium_of(const struct grid *grid, struct vec2 at, int i, int j)
+{
+    if (grid->medium == NULL)
+        return MEDIUM_MIXED;
+    const int cell = grid->medium[j * (grid->na - 1) + i];
+    if (cell != MEDIUM_MIXED)
+        return cell == MEDIUM_CONDUCTOR ? MEDIUM_MIXED : cell;
+    const int medium = plane_medium_at(grid->plane, at);
+    return medium == MEDIUM_CONDUCTOR ? MEDIUM_MIXED : medium;
+}
+
+/* True if the fit of a node may speak for a point in a medium. */
+static bool speaks(const struct grid *grid, int node, int medium)
+{
+    return window_passes(grid, node) &&
+           (medium == MEDIUM_MIXED || grid->node_medium[node] == medium);
+}
+
 /* The free node nearest to a point whose cell has no free corner; -1 if none is near. */
-static int nearest_free(const struct grid *grid, struct vec2 at, int i, int j)
+static int nearest_free(const struct grid *grid, struct vec2 at, int i, int j,
+                        int medium)
 {
     int best = -1;
     double shortest = (double)INFINITY;
@@ -336,7 +137,7 @@ static int nearest_free(const struct grid *grid, struct vec2 at, int i, int j)
         for (int di = -SEARCH; di <= SEARCH + 1; di++) {
             const int p = i + di, q = j + dj;
             if (p < 0 || q < 0 || p >= grid->na || q >= grid->nb ||
-                !passable(grid, q * grid->na + p))
+                !speaks(grid, q * grid->na + p, medium))
                 continue;
             double d = hypot(grid->a[p] - at.a, grid->b[q] - at.b);
             if (d < shortest) {
@@ -351,24 +152,26 @@ static int nearest_free(const struct grid *grid, struct vec2 at, int i, int j)
 #define WEIGHT_FLOOR 1e-12
 
 static enum status blend_cell(struct field *field, struct vec2 at, int i, int j,
-                              struct field_value *value)
+                              bool surface, struct field_value *value)
 {
     struct blend blend = {0};
     bool use[4];
-    enum status status = choose_corners(field, at, i, j, use);
+    const int medium = medium_of(field->grid, at, i, j);
+    enum status status = field_sight_corners(&field->sight, field->grid, at, i, j, use);
     for (int c = 0; c < 4 && status == STATUS_OK; c++)
-        if (use[c])
-            status = blend_corner(field, at, i, j, c & 1, c >> 1, &blend);
+        if (use[c] &&
+            speaks(field->grid, (j + (c >> 1)) * field->grid->na + i + (c & 1), medium))
+            status = blend_corner(field, at, i, j, c & 1, c >> 1, surface, &blend);
     if (status != STATUS_OK)
         return status;
     if (blend.weight < WEIGHT_FLOOR) {
-        const int node = nearest_free(field->grid, at, i, j);
-        const struct harmonic *fit = NULL;
+        const int node = nearest_free(field->grid, at, i, j, medium);
+        const struct local_fit *fit = NULL;
         if (node < 0)
             return STATUS_SIZE;
         status = fit_of_node(field, node, &fit);
         if (status == STATUS_OK)
-            value->potential = harmonic_value(fit, at, &value->gradient);
+            value->potential = local_fit_value(fit, at, &value->gradient);
         return status;
     }
     value->potential = blend.value / blend.weight;
@@ -378,7 +181,7 @@ static enum status blend_cell(struct field *field, struct vec2 at, int i, int j,
     return STATUS_OK;
 }
 
-/* Part the point lies in, -1 if none; only cells with a conductor are looked at. */
+/* Conductor the point lies in, -1 if none; only cells with a conductor are looked at. */
 static int part_at(const struct field *field, struct vec2 at, int i, int j)
 {
     const struct grid *grid = field->grid;
@@ -392,7 +195,8 @@ static int part_at(const struct field *field, struct vec2 at, int i, int j)
     if (!near)
         return -1;
     for (size_t p = 0; p < grid->plane->part_count; p++)
-        if (shape_contains(&grid->plane->parts[p].shape, at, 0.0))
+        if (part_is_conductor(&grid->plane->parts[p]) &&
+            shape_contains(&grid->plane->parts[p].shape, at, 0.0))
             return (int)p;
     return -1;
 }
@@ -403,8 +207,8 @@ static bool fold_point(const struct grid *grid, struct vec2 *at, struct vec2 *fl
 {
     const struct plane *plane = grid->plane;
     double *coordinate[2] = {&at->a, &at->b}, *mirrored[2] = {&flip->a, &flip->b};
-    const double low[2] = {plane->low.a, plane->low.b};
-    const double high[2] = {plane->high.a, plane->high.b};
+    const double low[2] = {grid->a[0], grid->b[0]};
+    const double high[2] = {grid->a[grid->na - 1], grid->b[grid->nb - 1]};
     *flip = (struct vec2){1.0, 1.0};
     *sign = 1.0;
     for (int axis = 0; axis < 2; axis++) {
@@ -417,7 +221,7 @@ static bool fold_point(const struct grid *grid, struct vec2 *at, struct vec2 *fl
         const enum side_index side = (enum side_index)(2 * axis + (above ? 1 : 0));
         if (fabs(*x - edge) <= slack) {
             *x = edge;
-        } else if (side_reflects(grid, side) &&
+        } else if (window_side_reflects(grid, side) &&
                    fabs(*x - edge) <= high[axis] - low[axis]) {
             *x = 2.0 * edge - *x;
             *mirrored[axis] = -1.0;
@@ -454,7 +258,7 @@ static enum status evaluate(struct field *field, struct vec2 at, bool surface,
         value->potential = sign * field->part_value[part];
         return STATUS_OK;
     }
-    enum status status = blend_cell(field, at, i, j, value);
+    enum status status = blend_cell(field, at, i, j, surface, value);
     value->potential *= sign;
     value->gradient.a *= sign * flip.a;
     value->gradient.b *= sign * flip.b;
@@ -472,10 +276,61 @@ enum status field_at_surface(struct field *field, struct vec2 at,
     return evaluate(field, at, true, value);
 }
 
+/* True if the three-point slopes of a node may reach across an interface. */
+static bool beside_interface(const struct grid *grid, int node)
+{
+    const int i = node % grid->na, j = node / grid->na;
+    const int own = grid->node_medium[node];
+    return own == MEDIUM_BORDER || (i > 0 && grid->node_medium[node - 1] != own) ||
+           (i + 1 < grid->na && grid->node_medium[node + 1] != own) ||
+           (j > 0 && grid->node_medium[node - grid->na] != own) ||
+           (j + 1 < grid->nb && grid->node_medium[node + grid->na] != own);
+}
+
+enum status field_mend_nodes(struct field *field, double *gradient_a,
+                             double *gradient_b)
+{
+    const struct grid *grid = field->grid;
+    enum status status = STATUS_OK;
+    for (int n = 0;
+         grid->node_medium != NULL && n < grid->na * grid->nb && status == STATUS_OK;
+         n++) {
+        struct field_value value;
+        const struct vec2 at = {grid->a[n % grid->na], grid->b[n / grid->na]};
+        if (grid->owner[n] != OWNER_FREE || !beside_interface(grid, n))
+            continue;
+        status = field_at(field, at, &value);
+        if (status == STATUS_SIZE) { /* a sliver that no node of its medium sees */
+            status = STATUS_OK;
+            continue;
+        }
+        gradient_a[n] = value.gradient.a;
+        gradient_b[n] = value.gradient.b;
+    }
+    return status;
+}
+
+static enum status allocate(struct field *field)
+{
+    const size_t nodes = (size_t)field->grid->na * (size_t)field->grid->nb;
+    field->fit_of = MEM_NEW(nodes, int);
+    field->work = MEM_NEW(local_fit_work(WINDOW_POINTS), double);
+    if (field->fit_of == NULL || field->work == NULL)
+        return STATUS_MEMORY;
+    for (size_t n = 0; n < nodes; n++)
+        field->fit_of[n] = -1;
+    if (!plane_kind_is_turned(field->grid->plane->kind))
+        return STATUS_OK;
+    field->radial = MEM_NEW(1, struct turned_radial);
+    if (field->radial == NULL)
+        return STATUS_MEMORY;
+    turned_radial_init(field->radial);
+    return STATUS_OK;
+}
+
 enum status field_create(const struct grid *grid, const double *phi,
                          const double *part_value, struct field **field)
 {
-    const size_t nodes = (size_t)grid->na * (size_t)grid->nb;
     *field = NULL;
     struct field *made = MEM_NEW(1, struct field);
     if (made == NULL)
@@ -483,16 +338,11 @@ enum status field_create(const struct grid *grid, const double *phi,
     made->grid = grid;
     made->phi = phi;
     made->part_value = part_value;
-    made->fit_of = MEM_NEW(nodes, int);
-    made->work = MEM_NEW((size_t)POINTS_MAX * (HARMONIC_TERMS + 1), double);
-    if (made->fit_of == NULL || made->work == NULL) {
+    enum status status = allocate(made);
+    if (status != STATUS_OK)
         field_destroy(&made);
-        return STATUS_MEMORY;
-    }
-    for (size_t n = 0; n < nodes; n++)
-        made->fit_of[n] = -1;
     *field = made;
-    return STATUS_OK;
+    return status;
 }
 
 void field_destroy(struct field **field)
@@ -503,7 +353,8 @@ void field_destroy(struct field **field)
     mem_free(f->fit_of);
     mem_free(f->fits);
     mem_free(f->work);
-    mem_free(f->spans);
+    mem_free(f->radial);
+    field_sight_free(&f->sight);
     mem_free(f);
     *field = NULL;
 }

@@ -27,6 +27,8 @@ enum figure_state {
     FIGURE_MISSING    /* cannot be had; note says why (a plane is missing, ...) */
 };
 
+enum { FIGURE_GRIDS_MAX = 3 };
+
 struct figure {
     const char *name;  /* stable key, snake_case, static text */
     const char *title; /* the same in words for people, static text */
@@ -40,6 +42,9 @@ struct figure {
     double uncertainty; /* SI, absolute, >= 0; 0 when exact (from input alone) */
     double scale;       /* SI: size against which changes from grid to grid are judged;
                            0: the value itself */
+    int grid_count;     /* of grids; 0 when missing or from the input alone */
+    double grids[FIGURE_GRIDS_MAX]; /* SI, values on the grids of the family, coarse to
+                                       fine, before they were combined */
 };
 
 /* Caller-owned list; zeroed is empty. */

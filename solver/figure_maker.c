@@ -22,6 +22,12 @@ void maker_add(struct maker *maker, struct figure_key key, double value,
     append(maker, key, FIGURE_GOOD, value, subject, note);
 }
 
+void maker_add_unsettled(struct maker *maker, struct figure_key key, double value,
+                         const char *subject, const char *note)
+{
+    append(maker, key, FIGURE_UNSETTLED, value, subject, note);
+}
+
 void maker_miss(struct maker *maker, struct figure_key key, const char *subject,
                 const char *reason)
 {

@@ -32,6 +32,10 @@ struct figure_key {
 void maker_add(struct maker *maker, struct figure_key key, double value,
                const char *subject, const char *note);
 
+/** Appends a value that is unsettled whatever the grids say; the note tells why. */
+void maker_add_unsettled(struct maker *maker, struct figure_key key, double value,
+                         const char *subject, const char *note);
+
 /** Appends a missing figure with its reason. */
 void maker_miss(struct maker *maker, struct figure_key key, const char *subject,
                 const char *reason);

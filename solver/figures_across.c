@@ -196,7 +196,7 @@ static double expansion_radius(const struct geometry *g)
         return fmax(g->beam.half_x, g->beam.half_y);
     double reach = (double)INFINITY;
     for (int k = 0; k < PLANE_KINDS; k++)
-        if (g->planes[k].present && !plane_kind_is_along((enum plane_kind)k))
+        if (g->planes[k].present && plane_kind_is_across((enum plane_kind)k))
             reach = fmin(reach, g->planes[k].high.b - g->planes[k].low.b);
     return 0.05 * reach;
 }

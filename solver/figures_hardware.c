@@ -1,111 +1,160 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later */
 
-/* Figures of the hardware, per metre of depth: charges, capacitances, energy, surface
- * fields and fluxes. */
+/* Figures of the hardware: charges, capacitances, energy, forces, surface fields and
+ * fluxes. Per metre of depth; in turned planes of the whole ring. */
 
 #include <math.h>
 #include <stdio.h>
 
 #include "shared/constants.h"
 #include "solver/figure_maker.h"
-#include "solver/surface_field.h"
+#include "solver/figures_conductor.h"
+#include "solver/figures_surface.h"
 
 enum { NOTE_SIZE = 200 };
 
-/* Energy per metre, W = half the sum of potential times charge over parts and sides.
- * Walls with a potential that runs along them are left out: their energy needs the
- * charge density (note says so). */
-static double energy_of(const struct plane_solution *plane, double factor)
+/* Keys of figures whose unit depends on the plane: per metre, or of a whole ring. */
+static const struct figure_key CHARGE[2] = {{"charge", "charge per metre", "C/m", 0.0},
+                                            {"charge", "charge", "C", 0.0}};
+static const struct figure_key CAPACITANCE[2] = {
+    {"capacitance", "capacitance per metre", "F/m", 0.0},
+    {"capacitance", "capacitance", "F", 0.0}};
+static const struct figure_key ENERGY[2] = {
+    {"stored_energy", "stored energy per metre", "J/m", 0.0},
+    {"stored_energy", "stored energy", "J", 0.0}};
+
+static struct figure_key key_of(const struct figure_key keys[2],
+                                const struct plane_solution *plane, double scale)
 {
-    double sum = 0.0;
-    for (size_t p = 0; p < plane->plane->part_count; p++)
-        sum += plane->part_value[p] * plane->part_flux[p];
-    return 0.5 * factor * sum;
+    struct figure_key key = keys[plane_kind_is_turned(plane->plane->kind)];
+    key.scale = scale;
+    return key;
 }
 
-static bool walls_are_earthed(const struct plane_solution *plane)
+/* From the solver's flux to a charge. */
+static double charge_factor(const struct plane_solution *plane)
 {
+    return VACUUM_PERMITTIVITY * plane_depth(plane->plane->kind);
+}
+
+/* Potentials of the two ends of a side at the settings. */
+static void side_ends(const struct plane_solution *plane, int s, double ends[2])
+{
+    const struct side *side = &plane->plane->sides[s];
+    const bool wall = side->kind == SIDE_WALL;
+    ends[0] = wall ? geometry_potential(plane->geometry, &side->from) : 0.0;
+    ends[1] = wall ? geometry_potential(plane->geometry, &side->to) : 0.0;
+}
+
+/* Why half the sum of potential times charge is not the energy; NULL if it is. */
+static const char *energy_reason(const struct plane_solution *plane)
+{
+    double ends[SIDE_COUNT][2];
     for (int s = 0; s < SIDE_COUNT; s++) {
-        const struct side *side = &plane->plane->sides[s];
-        if (side->kind == SIDE_WALL &&
-            (geometry_potential(plane->geometry, &side->from) != 0.0 ||
-             geometry_potential(plane->geometry, &side->to) != 0.0))
-            return false;
+        side_ends(plane, s, ends[s]);
+        if (ends[s][0] != ends[s][1])
+            return "the potential of a wall runs along it";
     }
-    return true;
+    for (int s = SIDE_A_LOW; s <= SIDE_A_HIGH; s++)
+        for (int t = SIDE_B_LOW; t <= SIDE_B_HIGH; t++)
+            if (plane->plane->sides[s].kind != SIDE_MIRROR &&
+                plane->plane->sides[t].kind != SIDE_MIRROR && ends[s][0] != ends[t][0])
+                return "sides of different potential meet in a corner, where the "
+                       "energy has no bound";
+    return NULL;
 }
 
+/* W = half the sum of potential times charge over parts and sides. */
 static void add_energy(struct maker *maker, const struct plane_solution *plane)
 {
-    const struct figure_key key = {"stored_energy", "stored energy per metre", "J/m",
-                                   0.0};
-    const char *subject = plane_kind_key(plane->plane->kind);
-    if (walls_are_earthed(plane))
-        maker_add(maker, key, energy_of(plane, VACUUM_PERMITTIVITY), subject, NULL);
-    else
-        maker_miss(maker, key, subject,
-                   "a wall of the region is not at zero potential");
+    double sum = 0.0, ends[2];
+    for (size_t p = 0; p < plane->plane->part_count; p++)
+        sum += plane->part_value[p] * plane->part_flux[p];
+    for (int s = 0; s < SIDE_COUNT; s++) {
+        side_ends(plane, s, ends);
+        sum += ends[0] * plane->side_flux[s];
+    }
+    maker_add_or_miss(maker, key_of(ENERGY, plane, 0.0),
+                      0.5 * charge_factor(plane) * sum,
+                      plane_kind_key(plane->plane->kind), NULL, energy_reason(plane));
 }
 
-static void surface_note(const struct surface_peak *peak, const struct plane *plane,
-                         char *note, size_t size)
-{
-    char radius[64] = "flat face", corner[80] = "";
-    if (isfinite(peak->radius))
-        (void)snprintf(radius, sizeof radius, "radius %.4g mm", peak->radius * 1e3);
-    if (peak->corner_distance > 0.0)
-        (void)snprintf(corner, sizeof corner,
-                       "; looked at from %.3g mm on beside sharp corners",
-                       peak->corner_distance * 1e3);
-    (void)snprintf(note, size, "%s, at %s = %.5g, %s = %.5g mm%s", radius,
-                   axis_key(plane_kind_axis(plane->kind, 0)), peak->at.a * 1e3,
-                   axis_key(plane_kind_axis(plane->kind, 1)), peak->at.b * 1e3, corner);
-}
-
-static void add_surface(struct maker *maker, const struct plane_solution *plane,
-                        size_t part)
-{
-    const char *name = plane->plane->parts[part].name;
-    const struct figure_key key = {"surface_field", "surface field, peak", "V/m", 0.0};
-    struct surface_peak peak = {0};
-    char note[NOTE_SIZE];
-    enum status status = surface_field_peak(plane, part, &peak);
-    if (maker->status == STATUS_OK)
-        maker->status = status;
-    surface_note(&peak, plane->plane, note, sizeof note);
-    maker_add_or_miss(maker, key, peak.field, name, note,
-                      peak.found ? NULL : "no surface in free space");
-}
-
-/* Largest potential of the plane: sets the scale against which charges and fluxes that
- * vanish by symmetry are judged. */
+/* Largest potential of the plane: sets the scale against which charges, potentials and
+ * fluxes that vanish by symmetry are judged. */
 static double potential_scale(const struct plane_solution *plane)
 {
-    double scale = 0.0;
+    double scale = 0.0, ends[2];
     for (size_t p = 0; p < plane->plane->part_count; p++)
         scale = fmax(scale, fabs(plane->part_value[p]));
+    for (int s = 0; s < SIDE_COUNT; s++) {
+        side_ends(plane, s, ends);
+        scale = fmax(scale, fmax(fabs(ends[0]), fabs(ends[1])));
+    }
     return scale;
+}
+
+/* Fluxes per volt are about 1; in a turned plane about the size of the region. */
+static double flux_scale(const struct plane_solution *plane)
+{
+    const struct plane *p = plane->plane;
+    const double size = fmax(p->high.a - p->low.a, p->high.b - p->low.b);
+    return potential_scale(plane) * (plane_kind_is_turned(p->kind) ? size : 1.0);
+}
+
+/* The capacitance belongs to the conductor, told at its first part. */
+static void add_capacitance(struct maker *maker, const struct plane_solution *plane,
+                            size_t part)
+{
+    const struct conductors *all = &plane->capacitance.conductors;
+    const struct conductor *conductor = &all->items[all->of_part[part]];
+    const struct part *parts = plane->plane->parts;
+    char text[NOTE_SIZE];
+    const char *reason = NULL;
+    if (conductor->first != part) {
+        (void)snprintf(text, sizeof text, "one conductor with %s",
+                       parts[conductor->first].name);
+        reason = text;
+    }
+    if (conductor->held)
+        reason = conductor->parts == 1
+                     ? "the part touches a side of fixed potential"
+                     : "the part is one conductor with a side of fixed potential";
+    maker_add_or_miss(maker, key_of(CAPACITANCE, plane, 0.0),
+                      charge_factor(plane) * plane->self_flux[part], parts[part].name,
+                      conductor->parts == 1
+                          ? "to everything else, earthed"
+                          : "with the parts it touches, to everything else, earthed",
+                      reason);
+}
+
+static void add_potential(struct maker *maker, const struct plane_solution *plane,
+                          size_t part)
+{
+    const struct figure_key key = {"potential", "potential found", "V",
+                                   potential_scale(plane)};
+    if (plane->plane->parts[part].kind == PART_FLOATING)
+        maker_add(maker, key, plane->part_value[part], plane->plane->parts[part].name,
+                  "floating");
 }
 
 static void add_electric(struct maker *maker, const struct plane_solution *plane)
 {
-    const double scale = VACUUM_PERMITTIVITY * potential_scale(plane);
+    const double scale = charge_factor(plane) * flux_scale(plane);
     maker->planes = plane_bit(plane->plane->kind);
     for (size_t p = 0; p < plane->plane->part_count; p++) {
-        const char *name = plane->plane->parts[p].name;
-        maker_add(maker,
-                  (struct figure_key){"charge", "charge per metre", "C/m", scale},
-                  VACUUM_PERMITTIVITY * plane->part_flux[p], name, NULL);
-        maker_add_or_miss(
-            maker,
-            (struct figure_key){"capacitance", "capacitance per metre", "F/m", 0.0},
-            VACUUM_PERMITTIVITY * plane->self_flux[p], name,
-            "to everything else, earthed",
-            plane_touches_wall(plane->plane, &plane->plane->parts[p])
-                ? "the part touches a wall of the region"
-                : NULL);
-        add_surface(maker, plane, p);
+        if (!part_is_conductor(&plane->plane->parts[p]))
+            continue;
+        maker_add(maker, key_of(CHARGE, plane, scale),
+                  charge_factor(plane) * plane->part_flux[p],
+                  plane->plane->parts[p].name, NULL);
+        add_capacitance(maker, plane, p);
+        figures_conductor_surface(maker, plane, p);
     }
+    figures_insulator_surfaces(maker, plane);
+    for (size_t p = 0; p < plane->plane->part_count; p++)
+        add_potential(maker, plane, p);
+    figures_matrix(maker, plane);
+    figures_force(maker, plane);
     add_energy(maker, plane);
 }
 

@@ -47,7 +47,7 @@ static void add_link(const struct grid *grid, const double *phi, const int *labe
     const int next = leg == LEG_EAST ? node + 1 : node + grid->na;
     if (label[node] == label[next])
         return;
-    const double flux = stencil_link(grid, node, leg) * (phi[node] - phi[next]);
+    const double flux = stencil_flux(grid, phi, node, leg);
     credit(totals, label[node], flux);
     credit(totals, label[next], -flux);
 }

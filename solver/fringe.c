@@ -14,6 +14,29 @@ static double fringe_integral(const struct path *path, const double *f, double c
     return path_integral(path, weighted, i, j);
 }
 
+/* Samples over which the decay at an end is measured. */
+enum { DECAY_SAMPLES = (PATH_POINTS - 1) / 100 };
+
+/* |F| times the decay length at sample `end`, looking inward from it. A field that does
+ * not fall is taken to go on as far again as the end is from the reference point. */
+static double tail(const struct path *path, const double *f, double centre, int end,
+                   double reference_z)
+{
+    const int inner = end == 0 ? DECAY_SAMPLES : end - DECAY_SAMPLES;
+    const double left = fabs(f[end] / centre), before = fabs(f[inner] / centre);
+    const double most = fabs(path->z[end] - reference_z);
+    if (left == 0.0)
+        return 0.0;
+    const double folds = log(before / left);
+    const double decay = folds > 0.0 ? DECAY_SAMPLES * path->step / folds : most;
+    return left * fmin(decay, most);
+}
+
+static bool is_inside(double f, double centre)
+{
+    return fabs(f / centre - 1.0) <= FRINGE_INSIDE;
+}
+
 struct fringe fringe_of(const struct path *path, const double *f, double centre,
                         double reference_z, double gap)
 {
@@ -26,7 +49,13 @@ struct fringe fringe_of(const struct path *path, const double *f, double centre,
                             .entrance = path->z[middle] - before,
                             .exit = path->z[middle] + after,
                             .leftover_from = fabs(f[0] / centre),
-                            .leftover_to = fabs(f[last] / centre)};
+                            .leftover_to = fabs(f[last] / centre),
+                            .inside_from = is_inside(f[0], centre),
+                            .inside_to = is_inside(f[last], centre)};
+    if (!fringe.inside_from)
+        fringe.tail_from = tail(path, f, centre, 0, reference_z);
+    if (!fringe.inside_to)
+        fringe.tail_to = tail(path, f, centre, last, reference_z);
     if (gap > 0.0) {
         fringe.k_entrance = fringe_integral(path, f, centre, 0, middle) / gap;
         fringe.k_exit = fringe_integral(path, f, centre, middle, last) / gap;

@@ -1,16 +1,16 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later */
 
-/* Columns are scaled to unit length before the rank is judged: on strongly stretched
- * cells the sine terms are tiny but carry the short direction. */
+/* On strongly stretched cells the sine terms are tiny but carry the short direction: the
+ * least squares scale their columns first. */
 
 #include "solver/harmonic_fit.h"
 
 #include <complex.h>
-#include <lapacke.h>
 #include <math.h>
+#include <stdbool.h>
+#include <stddef.h>
 
-/* Directions less certain than this are left out (minimum-norm solution). */
-#define FIT_RCOND 1e-10
+#include "solver/least_squares.h"
 
 static double reach_of(const struct fit_point *points, int count, struct vec2 centre)
 {
@@ -30,7 +30,7 @@ static int degree_for(int count)
 
 /* Column-major matrix [terms][count] of weighted terms, and weighted values. */
 static void fill(const struct fit_point *points, int count, const struct harmonic *fit,
-                 double *matrix, double *right)
+                 int terms, double *matrix, double *right)
 {
     for (int k = 0; k < count; k++) {
         const struct vec2 d = vec2_sub(points[k].at, fit->centre);
@@ -43,41 +43,37 @@ static void fill(const struct fit_point *points, int count, const struct harmoni
             matrix[(2 * n - 1) * count + k] = points[k].weight * creal(power);
             matrix[2 * n * count + k] = points[k].weight * cimag(power);
         }
+        if (terms == HARMONIC_TERMS)
+            matrix[(terms - 1) * count + k] = points[k].weight * creal(w) * creal(w);
     }
 }
 
-static void scale_columns(double *matrix, int count, int terms, double *norms)
+static enum status fit_with(const struct fit_point *points, int count,
+                            struct vec2 centre, bool exact, double *work,
+                            struct harmonic *fit)
 {
-    for (int t = 0; t < terms; t++) {
-        double sum = 0.0;
-        for (int k = 0; k < count; k++)
-            sum += matrix[t * count + k] * matrix[t * count + k];
-        norms[t] = sum > 0.0 ? sqrt(sum) : 1.0;
-        for (int k = 0; k < count; k++)
-            matrix[t * count + k] /= norms[t];
-    }
+    double *matrix = work, *right = work + (size_t)count * HARMONIC_TERMS;
+    *fit = (struct harmonic){
+        centre, reach_of(points, count, centre), degree_for(count), {0.0}};
+    const bool source = !exact && fit->degree == HARMONIC_DEGREE;
+    const int terms = source ? HARMONIC_TERMS : 2 * fit->degree + 1;
+    fill(points, count, fit, terms, matrix, right);
+    enum status status = least_squares(matrix, count, terms, right);
+    for (int t = 0; t < terms && status == STATUS_OK; t++)
+        fit->coefficient[t] = right[t];
+    return status;
 }
 
 enum status harmonic_fit(const struct fit_point *points, int count, struct vec2 centre,
                          double *work, struct harmonic *fit)
 {
-    double *matrix = work, *right = work + (size_t)count * HARMONIC_TERMS;
-    double norms[HARMONIC_TERMS];
-    lapack_int pivots[HARMONIC_TERMS] = {0}, rank = 0;
-    *fit = (struct harmonic){
-        centre, reach_of(points, count, centre), degree_for(count), {0.0}};
-    const int terms = 2 * fit->degree + 1;
-    fill(points, count, fit, matrix, right);
-    scale_columns(matrix, count, terms, norms);
-    if (LAPACKE_dgelsy(LAPACK_COL_MAJOR, count, terms, 1, matrix, count, right,
-                       count > terms ? count : terms, pivots, FIT_RCOND, &rank) != 0)
-        return STATUS_UNTRUSTED;
-    for (int t = 0; t < terms; t++) {
-        fit->coefficient[t] = right[t] / norms[t];
-        if (!isfinite(fit->coefficient[t]))
-            return STATUS_UNTRUSTED;
-    }
-    return STATUS_OK;
+    return fit_with(points, count, centre, false, work, fit);
+}
+
+enum status harmonic_fit_exact(const struct fit_point *points, int count,
+                               struct vec2 centre, double *work, struct harmonic *fit)
+{
+    return fit_with(points, count, centre, true, work, fit);
 }
 
 double harmonic_value(const struct harmonic *fit, struct vec2 at, struct vec2 *gradient)
@@ -85,8 +81,9 @@ double harmonic_value(const struct harmonic *fit, struct vec2 at, struct vec2 *g
     const struct vec2 d = vec2_sub(at, fit->centre);
     const double complex w = (d.a + d.b * (double complex)I) / fit->scale;
     double complex power = 1.0;
-    double value = fit->coefficient[0];
-    *gradient = (struct vec2){0.0, 0.0};
+    const double g = fit->coefficient[HARMONIC_TERMS - 1];
+    double value = fit->coefficient[0] + g * creal(w) * creal(w);
+    *gradient = (struct vec2){2.0 * g * creal(w) / fit->scale, 0.0};
     for (int n = 1; n <= fit->degree; n++) {
         const double c = fit->coefficient[2 * n - 1],
                      s = fit->coefficient[2 * (size_t)n];

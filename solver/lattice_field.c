@@ -1,11 +1,13 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later */
 
 /* A plane knows two of the three axes: its field is computed once on the two-dimensional
- * lattice of those axes and spread along the third. */
+ * lattice of those axes and spread along the third. Its uncertainty is not spread: a large
+ * lattice holds its fields only. */
 
 #include "solver/lattice_field.h"
 
 #include <assert.h>
+#include <math.h>
 #include <string.h>
 
 #include "shared/mem.h"
@@ -14,6 +16,7 @@
 /* Two components on the plane's own lattice [nb*na]. */
 struct sheet {
     double *field[2];
+    double *uncertainty[2]; /* of the combined sheet only, else NULL */
     unsigned char *solid;
 };
 
@@ -26,6 +29,8 @@ static void sheet_free(struct sheet *sheet)
 {
     mem_free(sheet->field[0]);
     mem_free(sheet->field[1]);
+    mem_free(sheet->uncertainty[0]);
+    mem_free(sheet->uncertainty[1]);
     mem_free(sheet->solid);
     memset(sheet, 0, sizeof *sheet);
 }
@@ -63,34 +68,56 @@ static enum status sheet_sample(const struct plane_solution *plane,
     return STATUS_OK;
 }
 
+static enum status sheet_new_combined(struct sheet *sheet, size_t n)
+{
+    enum status status = sheet_new(sheet, n);
+    sheet->uncertainty[0] = MEM_NEW(n, double);
+    sheet->uncertainty[1] = MEM_NEW(n, double);
+    return status == STATUS_OK && sheet->uncertainty[0] != NULL &&
+                   sheet->uncertainty[1] != NULL
+               ? STATUS_OK
+               : STATUS_MEMORY;
+}
+
+static double largest(const struct sheet *sheet, size_t n)
+{
+    double size = 0.0;
+    for (size_t k = 0; k < n; k++)
+        size = fmax(size, fmax(fabs(sheet->field[0][k]), fabs(sheet->field[1][k])));
+    return size;
+}
+
 static void sheet_combine(const struct sheet *levels, int count, size_t n,
                           struct sheet *best)
 {
-    double scale = 0.0;
     assert(count >= 1);
+    const double scale = largest(&levels[0], n);
     const double *parts[RESULT_LEVELS_MAX];
-    for (size_t k = 0; k < n; k++) {
-        const double size =
-            levels[0].field[0][k] < 0 ? -levels[0].field[0][k] : levels[0].field[0][k];
-        scale = size > scale ? size : scale;
-    }
+    memcpy(best->solid, levels[count - 1].solid, n);
     for (int c = 0; c < 2; c++) {
         for (int l = 0; l < count; l++)
             parts[l] = levels[l].field[c];
-        family_array(parts, count, n, scale, best->field[c], NULL);
+        family_array(parts, count, n, scale, best->field[c], best->uncertainty[c]);
+        for (size_t k = 0; k < n; k++) /* the 0 inside a part is exact */
+            if (best->solid[k])
+                best->uncertainty[c][k] = 0.0;
     }
-    memcpy(best->solid, levels[count - 1].solid, n);
+}
+
+static size_t sheet_points(const struct lattice *lattice, enum plane_kind kind)
+{
+    return (size_t)lattice->axes[plane_kind_axis(kind, 0)].count *
+           (size_t)lattice->axes[plane_kind_axis(kind, 1)].count;
 }
 
 static enum status sheet_of_plane(const struct view *views, int count,
                                   enum plane_kind kind, struct sheet *best)
 {
     const struct lattice *lattice = &views[0].geometry->lattice;
-    const size_t n = (size_t)lattice->axes[plane_kind_axis(kind, 0)].count *
-                     (size_t)lattice->axes[plane_kind_axis(kind, 1)].count;
+    const size_t n = sheet_points(lattice, kind);
     struct sheet levels[RESULT_LEVELS_MAX];
     memset(levels, 0, sizeof levels);
-    enum status status = sheet_new(best, n);
+    enum status status = sheet_new_combined(best, n);
     for (int l = 0; l < count && status == STATUS_OK; l++) {
         status = sheet_new(&levels[l], n);
         if (status == STATUS_OK)
@@ -103,18 +130,24 @@ static enum status sheet_of_plane(const struct view *views, int count,
     return status;
 }
 
+size_t lattice_sheet_index(const struct lattice_field *lattice, enum plane_kind kind,
+                           const int k[3])
+{
+    const enum axis first = plane_kind_axis(kind, 0), second = plane_kind_axis(kind, 1);
+    return (size_t)k[second] * (size_t)lattice->n[first] + (size_t)k[first];
+}
+
 /* Spreads a sheet over the third axis into three components and the solid mask. */
 static void spread(const struct lattice_field *lattice, enum plane_kind kind,
                    const struct sheet *sheet, double *out[3])
 {
     const enum axis first = plane_kind_axis(kind, 0), second = plane_kind_axis(kind, 1);
-    const int na = lattice->n[first];
     size_t n = 0;
     int k[3];
     for (k[AXIS_Z] = 0; k[AXIS_Z] < lattice->n[AXIS_Z]; k[AXIS_Z]++)
         for (k[AXIS_Y] = 0; k[AXIS_Y] < lattice->n[AXIS_Y]; k[AXIS_Y]++)
             for (k[AXIS_X] = 0; k[AXIS_X] < lattice->n[AXIS_X]; k[AXIS_X]++, n++) {
-                const size_t from = (size_t)k[second] * (size_t)na + (size_t)k[first];
+                const size_t from = lattice_sheet_index(lattice, kind, k);
                 out[first][n] = sheet->field[0][from];
                 out[second][n] = sheet->field[1][from];
                 lattice->solid[n] |= sheet->solid[from];
@@ -122,7 +155,8 @@ static void spread(const struct lattice_field *lattice, enum plane_kind kind,
 }
 
 static enum status fill_from(const struct view *views, int count, enum plane_kind kind,
-                             struct lattice_field *lattice, double *out[3])
+                             struct lattice_field *lattice, double *out[3],
+                             double *uncertainty[2])
 {
     const size_t n =
         (size_t)lattice->n[0] * (size_t)lattice->n[1] * (size_t)lattice->n[2];
@@ -133,8 +167,13 @@ static enum status fill_from(const struct view *views, int count, enum plane_kin
             return STATUS_MEMORY;
     }
     enum status status = sheet_of_plane(views, count, kind, &sheet);
-    if (status == STATUS_OK)
+    if (status == STATUS_OK) {
         spread(lattice, kind, &sheet, out);
+        for (int c = 0; c < 2; c++) {
+            uncertainty[c] = sheet.uncertainty[c];
+            sheet.uncertainty[c] = NULL;
+        }
+    }
     sheet_free(&sheet);
     return status;
 }
@@ -172,11 +211,50 @@ enum status lattice_fill(const struct view *views, int count,
     lattice->has_electric = choose(&views[0], false, &lattice->electric_from);
     lattice->has_magnetic = choose(&views[0], true, &lattice->magnetic_from);
     if (status == STATUS_OK && lattice->has_electric)
-        status = fill_from(views, count, lattice->electric_from, lattice, lattice->e);
+        status = fill_from(views, count, lattice->electric_from, lattice, lattice->e,
+                           lattice->e_err);
     if (status == STATUS_OK && lattice->has_magnetic)
-        status = fill_from(views, count, lattice->magnetic_from, lattice, lattice->b);
+        status = fill_from(views, count, lattice->magnetic_from, lattice, lattice->b,
+                           lattice->b_err);
     if (status == STATUS_OK)
         lattice->present = true;
+    return status;
+}
+
+/* Widens the uncertainties of one plane, if its test is done. */
+static enum status widen(const struct view pair[2], enum plane_kind kind,
+                         const struct open_test *test, double *const uncertainty[2])
+{
+    const struct lattice *lattice = &pair[0].geometry->lattice;
+    const size_t n = sheet_points(lattice, kind);
+    struct sheet sheets[2] = {{.solid = NULL}, {.solid = NULL}};
+    enum status status = STATUS_OK;
+    if (!test->done)
+        return STATUS_OK;
+    for (int l = 0; l < 2 && status == STATUS_OK; l++) {
+        status = sheet_new(&sheets[l], n);
+        if (status == STATUS_OK)
+            status = sheet_sample(pair[l].planes[kind], lattice, &sheets[l]);
+    }
+    for (int c = 0; c < 2 && status == STATUS_OK; c++)
+        for (size_t k = 0; k < n; k++)
+            uncertainty[c][k] +=
+                test->factor * fabs(sheets[1].field[c][k] - sheets[0].field[c][k]);
+    sheet_free(&sheets[0]);
+    sheet_free(&sheets[1]);
+    return status;
+}
+
+enum status lattice_widen(const struct view pair[2], const struct plane_result *planes,
+                          struct lattice_field *lattice)
+{
+    enum status status = STATUS_OK;
+    if (lattice->present && lattice->has_electric)
+        status = widen(pair, lattice->electric_from,
+                       &planes[lattice->electric_from].open, lattice->e_err);
+    if (status == STATUS_OK && lattice->present && lattice->has_magnetic)
+        status = widen(pair, lattice->magnetic_from,
+                       &planes[lattice->magnetic_from].open, lattice->b_err);
     return status;
 }
 
@@ -185,6 +263,10 @@ void lattice_free(struct lattice_field *lattice)
     for (int c = 0; c < 3; c++) {
         mem_free(lattice->e[c]);
         mem_free(lattice->b[c]);
+    }
+    for (int c = 0; c < 2; c++) {
+        mem_free(lattice->e_err[c]);
+        mem_free(lattice->b_err[c]);
     }
     mem_free(lattice->solid);
     memset(lattice, 0, sizeof *lattice);

@@ -9,6 +9,7 @@
 #include "shared/constants.h"
 #include "shared/mem.h"
 #include "solver/blame.h"
+#include "solver/floating.h"
 #include "solver/flux.h"
 #include "solver/system.h"
 
@@ -19,11 +20,15 @@
 #define RESIDUAL_TRUSTED 1e-9
 #define RCOND_TRUSTED    1e-9
 #define BALANCE_TRUSTED  1e-6
+/* Reciprocity is of the discretisation: 2e-3 on the coarsest grids that can be had of round
+ * parts (300 unknowns), 1e-5 and less on usual ones. */
+#define RECIPROCITY_TRUSTED 0.05
 
 bool quality_is_trusted(const struct quality *q)
 {
     return q->residual <= RESIDUAL_TRUSTED && q->rcond >= RCOND_TRUSTED &&
-           q->flux_imbalance <= BALANCE_TRUSTED;
+           q->flux_imbalance <= BALANCE_TRUSTED && q->row_sum <= BALANCE_TRUSTED &&
+           q->reciprocity <= RECIPROCITY_TRUSTED;
 }
 
 static double seconds_now(void)
@@ -36,6 +41,11 @@ static double seconds_now(void)
 double plane_field_factor(enum plane_kind kind)
 {
     return plane_kind_is_magnetic(kind) ? -VACUUM_PERMEABILITY : -1.0;
+}
+
+double plane_depth(enum plane_kind kind)
+{
+    return plane_kind_is_turned(kind) ? 2.0 * PI : 1.0;
 }
 
 /* Share of a potential that column `column` drives: a gain, or the constant. */
@@ -86,20 +96,25 @@ static enum status allocate(struct plane_solution *s)
 
 /* Unit potential of one column, added to the potential at the settings. */
 static enum status solve_column(struct plane_solution *s, const struct system *system,
-                                size_t column, struct drive *drive)
+                                const struct floating *floating, size_t column,
+                                struct drive *drive)
 {
     const size_t supplies = s->geometry->supply_count;
     const size_t nodes = (size_t)s->grid.na * (size_t)s->grid.nb;
     const double setting =
         column < supplies ? s->geometry->supplies[column].setting : 1.0;
+    const bool charged = column == supplies && floating_is_charged(floating, s->plane);
     double residual = 0.0;
     drive_of_column(s->plane, column, supplies, drive);
-    if (drive_is_zero(drive, s->plane->part_count))
+    if (drive_is_zero(drive, s->plane->part_count) && !charged)
         return STATUS_OK;
     s->unit[column] = MEM_NEW(nodes, double);
     if (s->unit[column] == NULL)
         return STATUS_MEMORY;
     enum status status = system_solve(system, drive, s->unit[column], &residual);
+    if (status == STATUS_OK)
+        status =
+            floating_settle(floating, &s->grid, charged, s->unit[column], drive->part);
     if (status != STATUS_OK)
         return status;
     for (size_t n = 0; n < nodes; n++)
@@ -110,52 +125,43 @@ static enum status solve_column(struct plane_solution *s, const struct system *s
     return STATUS_OK;
 }
 
-/* Flux out of part p held at 1 with everything else at 0. */
-static enum status solve_one_self(struct plane_solution *s, const struct system *system,
-                                  size_t p, struct drive *drive, double *phi,
-                                  double *flux)
+static enum status solve_selves(struct plane_solution *s, const struct system *system,
+                                const struct floating *floating)
 {
-    double side[SIDE_COUNT], imbalance;
-    for (size_t q = 0; q < s->plane->part_count; q++)
-        drive->part[q] = q == p ? 1.0 : 0.0;
-    enum status status = system_solve(system, drive, phi, NULL);
-    if (status == STATUS_OK)
-        status = flux_measure(&s->grid, phi, flux, side, &imbalance);
-    s->self_flux[p] = flux[p];
-    return status;
+    struct capacitance *c = &s->capacitance;
+    enum status status = capacitance_measure(
+        &s->grid, system, floating, (struct force_field){s->phi, s->part_value}, c);
+    if (status != STATUS_OK)
+        return status;
+    s->self_flux = MEM_NEW(s->plane->part_count, double);
+    if (s->self_flux == NULL)
+        return STATUS_MEMORY;
+    for (size_t p = 0; p < s->plane->part_count; p++) {
+        const size_t k = c->conductors.of_part[p], n = c->conductors.count;
+        s->self_flux[p] = k < n ? c->flux[k * n + k] : 0.0;
+    }
+    s->quality.reciprocity = c->reciprocity;
+    s->quality.row_sum = c->row_sum;
+    return STATUS_OK;
 }
 
-static enum status solve_self(struct plane_solution *s, const struct system *system,
-                              struct drive *drive)
+static enum status solve_all(struct plane_solution *s, const struct system *system,
+                             struct messages *messages)
 {
-    const size_t nodes = (size_t)s->grid.na * (size_t)s->grid.nb;
-    const size_t parts = s->plane->part_count;
-    double *phi = MEM_NEW(nodes, double), *flux = MEM_NEW(parts, double);
-    s->self_flux = MEM_NEW(parts, double);
-    enum status status =
-        phi != NULL && flux != NULL && s->self_flux != NULL ? STATUS_OK : STATUS_MEMORY;
-    for (int k = 0; k < SIDE_COUNT; k++)
-        drive->side_from[k] = drive->side_to[k] = 0.0;
-    for (size_t p = 0; p < parts && status == STATUS_OK; p++)
-        if (!plane_touches_wall(s->plane, &s->plane->parts[p]))
-            status = solve_one_self(s, system, p, drive, phi, flux);
-    mem_free(phi);
-    mem_free(flux);
-    return status;
-}
-
-static enum status solve_all(struct plane_solution *s, const struct system *system)
-{
-    struct drive drive = {0};
-    drive.part = MEM_NEW(s->plane->part_count, double);
+    struct drive drive = {.part = MEM_NEW(s->plane->part_count, double)};
+    struct floating floating = {0};
     enum status status = drive.part != NULL ? STATUS_OK : STATUS_MEMORY;
+    if (status == STATUS_OK)
+        status = floating_prepare(&s->grid, system, &s->quality.residual, &floating,
+                                  messages);
     for (size_t c = 0; c <= s->geometry->supply_count && status == STATUS_OK; c++)
-        status = solve_column(s, system, c, &drive);
+        status = solve_column(s, system, &floating, c, &drive);
     if (status == STATUS_OK)
         status = flux_measure(&s->grid, s->phi, s->part_flux, s->side_flux,
                               &s->quality.flux_imbalance);
     if (status == STATUS_OK && !plane_kind_is_magnetic(s->plane->kind))
-        status = solve_self(s, system, &drive);
+        status = solve_selves(s, system, &floating);
+    floating_free(&floating);
     mem_free(drive.part);
     return status;
 }
@@ -181,10 +187,11 @@ static enum status judge(const struct plane_solution *s, struct messages *messag
     messages_add(messages, SEVERITY_ERROR, s->plane->place,
                  "the solve of %s (%d unknowns) cannot be trusted: residual %.2g "
                  "(expected at most %.0e), reciprocal condition %.2g (at least %.0e), "
-                 "flux balance %.2g (at most %.0e)",
+                 "flux balance %.2g and that of the capacitances %.2g (at most %.0e), "
+                 "reciprocity of these %.2g (at most %.0e)",
                  plane_kind_key(s->plane->kind), q->unknowns, q->residual,
                  RESIDUAL_TRUSTED, q->rcond, RCOND_TRUSTED, q->flux_imbalance,
-                 BALANCE_TRUSTED);
+                 q->row_sum, BALANCE_TRUSTED, q->reciprocity, RECIPROCITY_TRUSTED);
     blame(s, messages);
     return STATUS_UNTRUSTED;
 }
@@ -201,17 +208,19 @@ static void explain(const struct plane_solution *s, enum status status,
 }
 
 enum status plane_solve(const struct geometry *geometry, enum plane_kind kind,
-                        double fineness, int level, struct plane_solution *solution,
-                        struct messages *messages)
+                        const struct grid_request *request,
+                        struct plane_solution *solution, struct messages *messages)
 {
+    struct grid_request wanted = *request;
     const double start = seconds_now();
     struct system *system = NULL;
     struct system_facts facts = {0};
     memset(solution, 0, sizeof *solution);
     solution->geometry = geometry;
     solution->plane = &geometry->planes[kind];
-    enum status status = grid_build(solution->plane, fineness, level,
-                                    geometry->memory_budget, &solution->grid, messages);
+    wanted.memory_budget = geometry->memory_budget;
+    enum status status =
+        grid_build(solution->plane, &wanted, &solution->grid, messages);
     if (status != STATUS_OK)
         return status;
     status = allocate(solution);
@@ -221,7 +230,7 @@ enum status plane_solve(const struct geometry *geometry, enum plane_kind kind,
     solution->quality.rcond = facts.rcond;
     solution->quality.memory = facts.memory;
     if (status == STATUS_OK)
-        status = solve_all(solution, system);
+        status = solve_all(solution, system, messages);
     system_destroy(&system);
     if (status == STATUS_OK)
         status = field_create(&solution->grid, solution->phi, solution->part_value,
@@ -258,6 +267,7 @@ void plane_solution_free(struct plane_solution *solution)
     mem_free(solution->part_value);
     mem_free(solution->part_flux);
     mem_free(solution->self_flux);
+    capacitance_free(&solution->capacitance);
     grid_free(&solution->grid);
     memset(solution, 0, sizeof *solution);
 }

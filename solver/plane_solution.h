@@ -10,6 +10,7 @@
 #include "shared/attributes.h"
 #include "shared/message.h"
 #include "shared/status.h"
+#include "solver/capacitance.h"
 #include "solver/field.h"
 #include "solver/result.h"
 
@@ -24,24 +25,29 @@ struct plane_solution {
                              supply, the last for the constant parts; NULL if nothing
                              in the plane depends on it */
     double *phi;        /* [nb*na] at the settings */
-    double *part_value; /* [part_count] potential of every part at the settings */
+    double *part_value; /* [part_count] potential of every part at the settings; of
+                           floating parts the one found */
     double *part_flux;  /* [part_count] outward flux of -grad phi at the settings */
     double side_flux[SIDE_COUNT];
-    double *self_flux; /* [part_count] flux out of a part at 1 with all else at 0,
-                             0 for parts that touch a wall; electric planes only, else
-                             NULL */
+    double *self_flux; /* [part_count] flux out of the conductor that a part belongs to
+                          (conductor.h) at 1 with all else at 0; 0 if it is held.
+                          Electric planes only, else NULL */
+    struct capacitance capacitance; /* electric planes only, else empty */
     struct field *field;
 };
 
-/** Grid, factorisation, unit potentials and superposition of the plane `kind` at
- *  `level` of the family. STATUS_INPUT (grid_build), STATUS_SINGULAR and
- *  STATUS_UNTRUSTED with a message that names the plane; STATUS_MEMORY. */
+/** Grid, factorisation, unit potentials and superposition of the plane `kind` on the grid
+ *  asked for; the memory budget is the geometry's. Unit potentials include what floating
+ *  parts make of them; charges given to these belong to the constant one. STATUS_INPUT
+ *  (grid_build), STATUS_SINGULAR and STATUS_UNTRUSTED with a message that names the plane
+ *  (and a floating part that nothing holds); STATUS_MEMORY. */
 enum status plane_solve(const struct geometry *geometry, enum plane_kind kind,
-                        double fineness, int level, struct plane_solution *solution,
+                        const struct grid_request *request,
+                        struct plane_solution *solution,
                         struct messages *messages) MUST_CHECK;
 
-/** True if residual, reciprocal condition and flux balance are those of a sound solve; NaN
- *  is never trusted. */
+/** True if residual, reciprocal condition, flux balances and reciprocity are those of a
+ *  sound solve; NaN is never trusted. */
 bool quality_is_trusted(const struct quality *quality);
 
 /** E (V/m) or B (T) along (a, b) at a point; part (may be NULL) as field_at. */
@@ -50,6 +56,10 @@ enum status plane_field(const struct plane_solution *solution, struct vec2 at,
 
 /** Factor from the gradient of the potential to the field: -1 for E, -mu0 for B. */
 double plane_field_factor(enum plane_kind kind);
+
+/** Factor from a flux or force of the solver to that of the hardware: 1, per metre of
+ *  depth; 2 pi in a turned plane, for the whole ring. */
+double plane_depth(enum plane_kind kind);
 
 /** Empties; safe on zeroed and twice. */
 void plane_solution_free(struct plane_solution *solution);

@@ -8,9 +8,7 @@
 
 static struct vec2 place_in(const struct probe *probe, enum plane_kind kind)
 {
-    const double by_axis[3] = {probe->x, probe->y, probe->z};
-    return (struct vec2){by_axis[plane_kind_axis(kind, 0)],
-                         by_axis[plane_kind_axis(kind, 1)]};
+    return plane_kind_project(kind, probe->x, probe->y, probe->z);
 }
 
 static bool belongs(const struct view *view, const struct probe *probe,

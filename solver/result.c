@@ -22,6 +22,8 @@ void result_free(struct result *result)
     for (int k = 0; k < PLANE_KINDS; k++)
         plane_result_free(&result->planes[k]);
     verdict_free(&result->verdict);
+    cautions_free(&result->cautions);
+    accuracy_free(&result->accuracy);
     figures_free(&result->figures);
     profile_free(&result->profile);
     section_free(&result->section);

@@ -13,6 +13,8 @@
 #include "shared/attributes.h"
 #include "shared/message.h"
 #include "shared/status.h"
+#include "solver/accuracy.h"
+#include "solver/caution.h"
 #include "solver/figure.h"
 
 #define RESULT_LEVELS_MAX 3
@@ -28,14 +30,33 @@ struct quality {
                               is no flux */
     double seconds;        /* wall time of grid, factorisation and solves */
     double memory;         /* bytes, peak of the factorisation */
+    /* Of the capacitance matrix (capacitance.h); 0 without one. */
+    double reciprocity; /* largest |C_ij - C_ji| / largest |C|: of the discretisation */
+    double row_sum;     /* largest |sum of a row, sides included| / largest |C|: of the
+                           solves */
 };
 
-/* One plane. Node arrays are of the finest grid, not extrapolated. */
+/* What the doubling test says of a plane with open sides (doubling.h). */
+struct open_test {
+    bool done;              /* false: the plane has no open side */
+    int level;              /* the grid of the family it was done on, from 0 */
+    double distance;        /* m, from the region to the earth that stands far away */
+    double factor;          /* from the movement of a figure to what was added to its
+                               uncertainty */
+    double moved;           /* largest movement, of its scale, of a figure of this plane
+                               that stands when the distance is doubled */
+    const char *moved_most; /* title of that figure, static text; NULL if none */
+    int unsettled;          /* figures that move too much, and are marked */
+};
+
+/* One plane. Node arrays are of the finest grid, not extrapolated; of open planes only
+ * what lies in the region as drawn is kept. */
 struct plane_result {
     bool present;
     int levels;                                /* grids in the family */
     struct quality quality[RESULT_LEVELS_MAX]; /* coarse to fine */
-    struct grid grid;                          /* finest */
+    struct open_test open;
+    struct grid grid;  /* finest */
     double *potential; /* [nb*na] V or A, at the settings; no NaN */
     double *field_a;   /* [nb*na] E (V/m) or B (T), component along a; 0 inside parts */
     double *field_b;   /* [nb*na] the same along b */
@@ -83,7 +104,8 @@ struct probe_reading {
 
 /* E and B on the lattice for trajectory programs. Along planes are used where present
  * (E uniform along y, B uniform along x), else across planes (uniform along z).
- * Arrays [nz*ny*nx], x fastest, then y, then z. */
+ * Arrays [nz*ny*nx], x fastest, then y, then z. Uncertainties are kept once per plane, on
+ * the lattice of its two axes (lattice_sheet_index), the first fastest. */
 struct lattice_field {
     bool present;
     int n[3];         /* points along x, y, z (by enum axis) */
@@ -93,8 +115,11 @@ struct lattice_field {
     enum plane_kind electric_from, magnetic_from;
     double *e[3];         /* V/m, by axis; NULL without an electric plane */
     double *b[3];         /* T */
-    unsigned char *solid; /* 1 where the point lies inside a part of either plane
-                                (fields are 0 there) */
+    double *e_err[2];     /* V/m, of the components along the axes of electric_from; the
+                             third component is 0 by assumption */
+    double *b_err[2];     /* T, the same of magnetic_from */
+    unsigned char *solid; /* 1 where the point lies inside a part of either plane (the
+                             field of that plane is 0 there) */
 };
 
 struct verdict_item {
@@ -124,6 +149,8 @@ struct result {
     size_t probe_count;
     struct lattice_field lattice;
     struct verdict verdict;
+    struct cautions cautions; /* fields above what the trade holds to */
+    struct accuracy accuracy; /* that was asked for, and what came of it */
 };
 
 /** Empties; safe on zeroed, half built and twice. */

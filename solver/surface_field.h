@@ -16,13 +16,23 @@ struct surface_peak {
     struct vec2 at;         /* m */
     double radius;          /* m, of the surface there; INFINITY on a flat face */
     double corner_distance; /* m, kept from sharp corners; 0 if the part has none */
+    bool at_corner;  /* the peak lies where the look at the surface ends beside a sharp
+                        corner: it grows without limit as the distance shrinks */
+    bool edge_given; /* the distance is the edge radius that the file gives */
 };
 
-/** Peak over the part's surface inside the region. The points looked at do not depend on
- *  the grid.
- *  Order  2 on flat faces; 1.8 measured on a round one (coaxial core, four grids). The
- *         highest of the points looked at falls short of the true peak by about 2e-5. */
+/** Peak over a conductor's surface inside the region. Points a share of the outline apart
+ *  find the peaks, the highest are followed along the surface to the maximum of the
+ *  interpolated field (relative 1e-10); of peaks equal within 1e-9 the first along the
+ *  outline is taken. The points do not depend on the grid.
+ *  Order  2 on flat faces, with rounded corners and on round parts (see
+ *         tests/solver/convergence_surface.c). */
 enum status surface_field_peak(const struct plane_solution *plane, size_t part,
                                struct surface_peak *peak) MUST_CHECK;
+
+/** The same for the field along the surface (tangential) of an insulator, where it
+ *  borders on vacuum. */
+enum status surface_field_creep(const struct plane_solution *plane, size_t part,
+                                struct surface_peak *peak) MUST_CHECK;
 
 #endif

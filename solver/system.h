@@ -27,6 +27,7 @@ enum status system_create(const struct grid *grid, struct system **system,
                           struct system_facts *facts) MUST_CHECK;
 
 /** Potential at all nodes, phi[nb*na] in the unit of the drive, fixed nodes included.
+ *  After the solve the equations of nodes with cut legs are corrected once (cut_defect.h).
  *  residual: max over rows of |b - A x| / (|A||x| + |b|), 0 for a zero drive; NULL
  *  leaves out the iterative refinement (residual then about 1e-13 instead of 3e-16). STATUS_UNTRUSTED: a value is not finite. */
 enum status system_solve(const struct system *system, const struct drive *drive,

@@ -9,8 +9,7 @@
 
 enum { REASON_SIZE = 300 };
 
-/* Figure that a limit refers to. */
-static const char *figure_name(enum limit_kind kind)
+const char *verdict_figure_name(enum limit_kind kind)
 {
     static const char *const names[LIMIT_KINDS] = {
         [LIMIT_RATIO_ERROR] = "ratio_error_peak_across",
@@ -69,7 +68,7 @@ static enum status judge_item(const struct result *result, enum limit_kind kind,
 {
     const struct limit_rule *rule = geometry_limit_rule(kind);
     const struct figure *figure =
-        worst_figure(&result->figures, figure_name(kind), rule->at_least);
+        worst_figure(&result->figures, verdict_figure_name(kind), rule->at_least);
     char reason[REASON_SIZE];
     *item = (struct verdict_item){.limit = kind,
                                   .allowed = result->geometry->limits[kind].value,

@@ -13,6 +13,9 @@
  *  several figures (surface fields) the worst one is judged. */
 enum status verdict_judge(struct result *result) MUST_CHECK;
 
+/** Name of the figure (or of all the figures) that a limit refers to. */
+const char *verdict_figure_name(enum limit_kind kind);
+
 void verdict_free(struct verdict *verdict);
 
 #endif

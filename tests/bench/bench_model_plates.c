@@ -54,8 +54,10 @@ static enum status solve_level(const struct geometry *geometry, int level,
                                double *seconds)
 {
     struct plane_solution plane = {0};
-    enum status status = plane_solve(geometry, PLANE_ELECTRIC_ALONG, geometry->fineness,
-                                     level, &plane, NULL);
+    enum status status = plane_solve(
+        geometry, PLANE_ELECTRIC_ALONG,
+        &(struct grid_request){.fineness = geometry->fineness, .level = level}, &plane,
+        NULL);
     if (status == STATUS_OK)
         status = measure(&plane, reference, values);
     printf("  grid %d: %7d unknowns, %.2f s, residual %.1e, 1/cond %.1e, flux sum "

@@ -111,7 +111,11 @@ static enum status compare_plane(const char *title, const struct plane *plane,
 {
     struct grid grid;
     struct cost amd = {0}, metis = {0};
-    enum status status = grid_build(plane, fineness, level, 20e9, &grid, NULL);
+    enum status status =
+        grid_build(plane,
+                   &(struct grid_request){
+                       .fineness = fineness, .level = level, .memory_budget = 20e9},
+                   &grid, NULL);
     if (status == STATUS_OK)
         status = measure(&grid, ORDERING_AMD, &amd);
     if (status == STATUS_OK)

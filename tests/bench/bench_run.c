@@ -126,8 +126,11 @@ static enum status take_apart(const struct geometry *geometry, enum plane_kind k
     struct system_facts facts;
     double at[4] = {stopwatch_seconds(), 0.0, 0.0, 0.0};
     enum status status =
-        grid_build(&geometry->planes[kind], geometry->fineness, RESULT_LEVELS_MAX - 1,
-                   geometry->memory_budget, &grid, messages);
+        grid_build(&geometry->planes[kind],
+                   &(struct grid_request){.fineness = geometry->fineness,
+                                          .level = RESULT_LEVELS_MAX - 1,
+                                          .memory_budget = geometry->memory_budget},
+                   &grid, messages);
     at[1] = stopwatch_seconds();
     if (status == STATUS_OK)
         status = system_create(&grid, &system, &facts);

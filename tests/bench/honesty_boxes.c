@@ -94,8 +94,7 @@ static void expect_line(struct honesty_case *c, double ratio, double half, doubl
                              vec2_scale(way, VOLTS * field / half));
     }
     honesty_expect_flux(c, 0, VOLTS * capacitance);
-    honesty_expect(c,
-                   (struct honesty_figure){.kind = HONESTY_SELF, .exact = capacitance});
+    honesty_expect_capacitance(c, 0, capacitance);
 }
 
 static void square_points(struct vec2 points[4], double half, double angle)
@@ -255,6 +254,7 @@ void honesty_boxes(struct honesty_tally *tally)
     static const double ratios[] = {0.2, 1.0 / 3.0, 0.4, 0.5, 0.7};
     static const double walls[] = {0.5, 1.0, 1.7, 3.0};
     static const double slots[] = {0.5, 1.0, 5.0, 10.0};
+    honesty_family(tally, "boxes");
     check_closed_forms();
     for (int k = 0; k < 5; k++)
         straight_line_case(tally, ratios[k]);

@@ -5,40 +5,11 @@
 #include <stdlib.h>
 #include <string.h>
 
+#include "shared/constants.h"
 #include "shared/mem.h"
-#include "solver/extrapolate.h"
-#include "solver/fringe.h"
-#include "solver/path.h"
 #include "solver/plane_solution.h"
-#include "solver/surface_field.h"
+#include "solver/run.h"
 #include "tests/support/scene.h"
-
-#define INSIDE_TARGET 0.95
-#define MEDIAN_TARGET 10.0
-
-enum { LEVELS = RESULT_LEVELS_MAX, WORST_SHOWN = 12 };
-
-/* One figure after the family has spoken. */
-struct honesty_result {
-    char case_name[HONESTY_NAME];
-    enum honesty_kind kind;
-    struct vec2 at;
-    double exact, error; /* error is absolute, >= 0 */
-    struct estimate estimate;
-};
-
-static const char *const kind_names[] = {"potential", "field a",   "field b",
-                                         "flux",      "self flux", "peak",
-                                         "length",    "exit edge", "K"};
-enum { KINDS = sizeof kind_names / sizeof *kind_names };
-
-static void must(enum status status, const char *what)
-{
-    if (status == STATUS_OK)
-        return;
-    (void)fprintf(stderr, "bench_honesty: %s: %s\n", what, status_text(status));
-    exit(EXIT_FAILURE);
-}
 
 struct plane *honesty_begin(struct honesty_case *c, const char *name,
                             enum plane_kind kind, double setting, struct vec2 low,
@@ -51,10 +22,31 @@ struct plane *honesty_begin(struct honesty_case *c, const char *name,
     return scene_plane(&c->geometry, kind, low.a, high.a, low.b, high.b);
 }
 
+void honesty_sides(struct plane *plane, const enum side_index *sides, size_t count,
+                   enum side_kind kind)
+{
+    for (size_t k = 0; k < count; k++)
+        plane->sides[sides[k]].kind = kind;
+}
+
+struct part *honesty_insulate(struct part *part, double permittivity)
+{
+    part->kind = PART_INSULATOR;
+    part->permittivity = permittivity;
+    return part;
+}
+
+struct part *honesty_float(struct part *part, double charge)
+{
+    part->kind = PART_FLOATING;
+    part->charge = charge;
+    return part;
+}
+
 void honesty_expect(struct honesty_case *c, struct honesty_figure figure)
 {
     if (c->count == HONESTY_FIGURES)
-        must(STATUS_SIZE, c->name);
+        honesty_must(STATUS_SIZE, c->name);
     c->figures[c->count++] = figure;
 }
 
@@ -75,219 +67,219 @@ void honesty_expect_point(struct honesty_case *c, struct vec2 at, double potenti
         honesty_expect(c, f);
 }
 
+/* From the solver's fluxes to charges (or magnetic fluxes) of the hardware. */
+static double charge_factor(const struct honesty_case *c)
+{
+    return plane_depth(c->kind) * (plane_kind_is_magnetic(c->kind)
+                                       ? VACUUM_PERMEABILITY
+                                       : VACUUM_PERMITTIVITY);
+}
+
 void honesty_expect_flux(struct honesty_case *c, size_t part, double exact)
 {
-    const double scale = fabs(c->geometry.supplies[0].setting);
-    honesty_expect(
-        c, (struct honesty_figure){
-               .kind = HONESTY_FLUX, .part = part, .scale = scale, .exact = exact});
+    honesty_expect(c, (struct honesty_figure){.kind = HONESTY_CHARGE,
+                                              .part = part,
+                                              .exact = charge_factor(c) * exact});
 }
 
-static double measure_point(const struct plane_solution *s,
-                            const struct honesty_figure *f)
+void honesty_expect_capacitance(struct honesty_case *c, size_t part, double exact)
 {
-    struct field_value value;
-    must(field_at(s->field, f->at, &value), "field");
-    const double factor = plane_field_factor(s->plane->kind);
-    if (f->kind == HONESTY_POTENTIAL)
-        return value.potential;
-    return factor * (f->kind == HONESTY_FIELD_A ? value.gradient.a : value.gradient.b);
+    honesty_expect(c, (struct honesty_figure){.kind = HONESTY_CAPACITANCE,
+                                              .part = part,
+                                              .exact = charge_factor(c) * exact});
 }
 
-static double measure_peak(const struct plane_solution *s, size_t part)
+void honesty_expect_matrix(struct honesty_case *c, size_t part, size_t other,
+                           double exact)
 {
-    struct surface_peak peak;
-    must(surface_field_peak(s, part, &peak), "surface field");
-    return peak.field;
+    honesty_expect(c, (struct honesty_figure){.kind = HONESTY_MATRIX,
+                                              .part = part,
+                                              .other = other,
+                                              .exact = charge_factor(c) * exact});
 }
 
-static double measure(const struct plane_solution *s, const struct fringe *fringe,
-                      const struct honesty_figure *f)
+void honesty_expect_force(struct honesty_case *c, size_t part, struct vec2 exact)
 {
-    switch (f->kind) {
-    case HONESTY_FLUX:
-        return s->part_flux[f->part];
-    case HONESTY_SELF:
-        return s->self_flux[f->part];
-    case HONESTY_PEAK:
-        return measure_peak(s, f->part);
-    case HONESTY_LENGTH:
-        return fringe->length;
-    case HONESTY_EXIT:
-        return fringe->exit;
-    case HONESTY_FRINGE_K:
-        return fringe->k_exit;
-    default:
-        return measure_point(s, f);
+    struct honesty_figure f = {
+        .kind = HONESTY_FORCE_A, .part = part, .exact = charge_factor(c) * exact.a};
+    if (exact.a != 0.0)
+        honesty_expect(c, f);
+    f.kind = HONESTY_FORCE_B;
+    f.exact = charge_factor(c) * exact.b;
+    if (exact.b != 0.0)
+        honesty_expect(c, f);
+}
+
+static bool is_point(const struct honesty_figure *f)
+{
+    return f->kind <= HONESTY_FIELD_B;
+}
+
+/* A probe for every figure at a point, so that readings are found by counting. */
+static void add_probes(struct honesty_case *c)
+{
+    struct geometry *g = &c->geometry;
+    g->probes = MEM_NEW((size_t)c->count, struct probe);
+    honesty_must(g->probes != NULL ? STATUS_OK : STATUS_MEMORY, "probes");
+    for (int k = 0; k < c->count; k++) {
+        const struct honesty_figure *f = &c->figures[k];
+        if (!is_point(f))
+            continue;
+        struct probe *probe = &g->probes[g->probe_count++];
+        *probe = (struct probe){.has_plane = true, .plane = c->kind};
+        double *place[] = {[AXIS_X] = &probe->x,
+                           [AXIS_Y] = &probe->y,
+                           [AXIS_Z] = &probe->z,
+                           [AXIS_R] = &probe->x};
+        *place[plane_kind_axis(c->kind, 0)] = f->at.a;
+        *place[plane_kind_axis(c->kind, 1)] = f->at.b;
     }
 }
 
-static void measure_fringe(const struct honesty_case *c, const struct plane_solution *s,
-                           struct fringe *fringe)
+/* The figure of the program; magnetic: in the list as that of the B field. */
+static const char *figure_name(const struct honesty_case *c, enum honesty_kind kind)
 {
-    struct view view = {.geometry = &c->geometry};
-    struct path path;
-    view.planes[c->kind] = s;
-    must(path_sample(&view, &path), "path");
-    const bool magnetic = plane_kind_is_magnetic(c->kind);
-    *fringe = fringe_of(&path, magnetic ? path.b_y[0] : path.e_x[0],
-                        magnetic ? path.b_centre : path.e_centre, 0.0, c->gap);
-    path_free(&path);
+    static const char *const names[HONESTY_KINDS][2] = {
+        [HONESTY_CHARGE] = {"charge", "flux"},
+        [HONESTY_CAPACITANCE] = {"capacitance", NULL},
+        [HONESTY_MATRIX] = {"capacitance_matrix", NULL},
+        [HONESTY_FOUND] = {"potential", NULL},
+        [HONESTY_PEAK] = {"surface_field", NULL},
+        [HONESTY_CREEP] = {"insulator_field", NULL},
+        [HONESTY_LENGTH] = {"effective_length_electric", "effective_length_magnetic"},
+        [HONESTY_EXIT] = {"edge_exit_electric", "edge_exit_magnetic"},
+        [HONESTY_FRINGE_K] = {"fringe_integral_exit_electric",
+                              "fringe_integral_exit_magnetic"}};
+    static const char *const forces[] = {
+        [AXIS_X] = "force_x", [AXIS_Y] = "force_y", [AXIS_Z] = "force_z"};
+    if (kind == HONESTY_FORCE_A || kind == HONESTY_FORCE_B)
+        return forces[plane_kind_axis(c->kind, kind == HONESTY_FORCE_B)];
+    return names[kind][plane_kind_is_magnetic(c->kind)];
 }
 
-static void print_messages(const struct messages *messages)
+static const struct figure *figure_of(const struct honesty_case *c,
+                                      const struct honesty_figure *f,
+                                      const struct figures *figures)
 {
-    for (size_t k = 0; k < messages->count; k++)
-        (void)fprintf(stderr, "  %s\n", messages->items[k].text);
+    const struct part *parts = c->geometry.planes[c->kind].parts;
+    char subject[2 * HONESTY_NAME] = "";
+    if (f->kind == HONESTY_MATRIX)
+        (void)snprintf(subject, sizeof subject, "%s, %s", parts[f->part].name,
+                       parts[f->other].name);
+    else if (f->kind < HONESTY_LENGTH)
+        (void)snprintf(subject, sizeof subject, "%s", parts[f->part].name);
+    const struct figure *figure = figures_find(figures, figure_name(c, f->kind),
+                                               subject[0] != '\0' ? subject : NULL);
+    if (figure == NULL || figure->state == FIGURE_MISSING) {
+        (void)fprintf(stderr, "bench_honesty: %s: no %s %s\n", c->name,
+                      figure_name(c, f->kind), subject);
+        exit(EXIT_FAILURE);
+    }
+    return figure;
 }
 
-static int solve_level(struct honesty_case *c, double fineness, int level)
+static struct honesty_result result_of_point(const struct honesty_figure *f,
+                                             const struct probe_reading *p)
 {
-    struct plane_solution s;
-    struct fringe fringe = {0};
-    struct messages messages = {0};
-    const enum status status =
-        plane_solve(&c->geometry, c->kind, fineness, level, &s, &messages);
-    print_messages(&messages);
-    must(status, c->name);
-    if (c->geometry.beam.has_path)
-        measure_fringe(c, &s, &fringe);
-    for (int k = 0; k < c->count; k++)
-        c->figures[k].values[level] = measure(&s, &fringe, &c->figures[k]);
-    const int unknowns = s.quality.unknowns;
-    messages_free(&messages);
-    plane_solution_free(&s);
-    return unknowns;
+    struct honesty_result r = {.settled = true};
+    const int b = f->kind == HONESTY_FIELD_B;
+    r.value = f->kind == HONESTY_POTENTIAL ? p->potential : p->field[b];
+    r.uncertainty = f->kind == HONESTY_POTENTIAL ? p->potential_err : p->field_err[b];
+    return r;
 }
 
-static bool is_inside(const struct honesty_result *r)
+static struct honesty_result result_of_figure(const struct figure *figure)
 {
-    return r->error <= r->estimate.uncertainty;
+    return (struct honesty_result){.value = figure->value,
+                                   .uncertainty = figure->uncertainty,
+                                   .settled = figure->state == FIGURE_GOOD};
 }
 
-/* Printed uncertainty over true error; large where the error is lost in round-off. */
-static double ratio_of(const struct honesty_result *r)
+/* What the grids gave, which probe readings do not keep. */
+static void solve_points(const struct honesty_case *c,
+                         const struct honesty_tally *tally,
+                         double (*values)[RESULT_LEVELS_MAX])
 {
-    return r->estimate.uncertainty / fmax(r->error, 1e-15 * fabs(r->exact));
+    for (int l = 0; l < tally->levels; l++) {
+        struct plane_solution s;
+        honesty_must(
+            plane_solve(&c->geometry, c->kind,
+                        &(struct grid_request){.fineness = tally->fineness, .level = l},
+                        &s, NULL),
+            c->name);
+        for (int k = 0; k < c->count; k++) {
+            const struct honesty_figure *f = &c->figures[k];
+            struct field_value v;
+            if (!is_point(f))
+                continue;
+            honesty_must(field_at(s.field, f->at, &v), c->name);
+            const double slope =
+                f->kind == HONESTY_FIELD_A ? v.gradient.a : v.gradient.b;
+            values[k][l] = f->kind == HONESTY_POTENTIAL
+                               ? v.potential
+                               : plane_field_factor(c->kind) * slope;
+        }
+        plane_solution_free(&s);
+    }
 }
 
-static void print_result(const struct honesty_result *r)
+static void write_raw(const struct honesty_case *c, const struct honesty_tally *tally,
+                      const struct figures *figures)
 {
-    char place[40] = "";
-    if (r->kind <= HONESTY_FIELD_B)
-        (void)snprintf(place, sizeof place, " (%.4g, %.4g) mm", 1e3 * r->at.a,
-                       1e3 * r->at.b);
-    printf("  %-9s%-24s %17.10g %9.1e %9.1e %7.2f %9.3g  %s%s\n", kind_names[r->kind],
-           place, r->estimate.value, r->estimate.uncertainty / fabs(r->exact),
-           r->error / fabs(r->exact), r->estimate.order, ratio_of(r),
-           is_inside(r) ? "inside" : "OUTSIDE",
-           r->estimate.settled ? "" : ", unsettled");
+    double values[HONESTY_FIGURES][RESULT_LEVELS_MAX] = {{0.0}};
+    const struct honesty_result *r = &tally->results[tally->count - (size_t)c->count];
+    solve_points(c, tally, values);
+    for (int k = 0; k < c->count; k++, r++) {
+        const struct honesty_figure *f = &c->figures[k];
+        const struct figure *figure = is_point(f) ? NULL : figure_of(c, f, figures);
+        (void)fprintf(tally->raw, "%s;%s;%s;%.6g;%.6g;%.17g;%.17g;%.17g;%.17g",
+                      tally->families[r->family], c->name, honesty_kind_name(f->kind),
+                      f->at.a, f->at.b, f->exact, r->value, r->uncertainty,
+                      figure != NULL ? figure->scale : 0.0);
+        for (int l = 0; l < tally->levels; l++)
+            (void)fprintf(tally->raw, ";%.17g",
+                          figure != NULL ? figure->grids[l] : values[k][l]);
+        (void)fprintf(tally->raw, "\n");
+    }
 }
 
-static void tally_figure(const struct honesty_case *c, const struct honesty_figure *f,
-                         struct honesty_tally *tally)
+static void tally_all(const struct honesty_case *c, const struct result *result,
+                      struct honesty_tally *tally)
 {
-    void *array = tally->results;
-    must(mem_grow(&array, &tally->capacity, tally->count + 1, sizeof *tally->results),
-         "tally");
-    tally->results = array;
-    struct honesty_result *r = &tally->results[tally->count++];
-    memcpy(r->case_name, c->name, sizeof r->case_name);
-    r->kind = f->kind;
-    r->at = f->at;
-    r->exact = f->exact;
-    r->estimate = extrapolate(f->values, LEVELS, f->scale);
-    r->error = fabs(r->estimate.value - f->exact);
-    print_result(r);
+    size_t probe = 0;
+    for (int k = 0; k < c->count; k++) {
+        const struct honesty_figure *f = &c->figures[k];
+        struct honesty_result r =
+            is_point(f) ? result_of_point(f, &result->probes[probe++])
+                        : result_of_figure(figure_of(c, f, &result->figures));
+        memcpy(r.case_name, c->name, sizeof r.case_name);
+        r.kind = f->kind;
+        r.at = f->at;
+        r.exact = f->exact;
+        honesty_add(tally, &r);
+    }
     if (tally->raw != NULL)
-        (void)fprintf(tally->raw, "%s;%s;%.17g;%.17g;%.17g;%.17g;%.17g\n", c->name,
-                      kind_names[f->kind], f->scale, f->exact, f->values[0],
-                      f->values[1], f->values[2]);
+        write_raw(c, tally, &result->figures);
 }
 
 void honesty_run(struct honesty_case *c, struct honesty_tally *tally)
 {
-    int unknowns = 0;
-    for (int l = 0; l < LEVELS; l++)
-        unknowns = solve_level(c, tally->fineness, l);
-    tally->cases++;
-    printf("%d %s, %d unknowns\n", tally->cases, c->name, unknowns);
-    for (int k = 0; k < c->count; k++)
-        tally_figure(c, &c->figures[k], tally);
+    struct result result;
+    struct messages messages = {0};
+    const struct run_options options = {.fineness = tally->fineness,
+                                        .levels = tally->levels};
+    add_probes(c);
+    const enum status status = run_geometry(&c->geometry, &options, &result, &messages);
+    for (size_t k = 0; k < messages.count; k++)
+        (void)fprintf(stderr, "  %s\n", messages.items[k].text);
+    honesty_must(status, c->name);
+    if (result.probe_count != c->geometry.probe_count)
+        honesty_must(STATUS_SIZE, c->name);
+    honesty_count_case(tally);
+    printf("%d %s, %d unknowns\n", tally->cases, c->name,
+           result.planes[c->kind].quality[tally->levels - 1].unknowns);
+    tally_all(c, &result, tally);
+    messages_free(&messages);
+    result_free(&result);
     geometry_free(&c->geometry);
-}
-
-static int by_value(const void *p, const void *q)
-{
-    const double a = *(const double *)p, b = *(const double *)q;
-    return (a > b) - (a < b);
-}
-
-struct summary {
-    size_t count, inside, unsettled;
-    double median;
-};
-
-/* Of one kind, or of all with kind = KINDS. */
-static struct summary summarise(const struct honesty_tally *tally, int kind)
-{
-    struct summary s = {0, 0, 0, 0.0};
-    double *ratios = MEM_NEW(tally->count, double);
-    must(ratios != NULL ? STATUS_OK : STATUS_MEMORY, "summary");
-    for (size_t k = 0; k < tally->count; k++) {
-        const struct honesty_result *r = &tally->results[k];
-        if (kind != KINDS && (int)r->kind != kind)
-            continue;
-        s.inside += is_inside(r) ? 1 : 0;
-        s.unsettled += r->estimate.settled ? 0 : 1;
-        ratios[s.count++] = ratio_of(r);
-    }
-    qsort(ratios, s.count, sizeof *ratios, by_value);
-    if (s.count > 0)
-        s.median = 0.5 * (ratios[(s.count - 1) / 2] + ratios[s.count / 2]);
-    mem_free(ratios);
-    return s;
-}
-
-static void print_summary(const char *title, struct summary s)
-{
-    if (s.count > 0)
-        printf("  %-10s %4zu figures, inside %5.1f %%, median ratio %5.3g, unsettled "
-               "%zu\n",
-               title, s.count, 100.0 * (double)s.inside / (double)s.count, s.median,
-               s.unsettled);
-}
-
-static int by_ratio(const void *p, const void *q)
-{
-    const double a = ratio_of(p), b = ratio_of(q);
-    return (a > b) - (a < b);
-}
-
-static void print_worst(const struct honesty_tally *tally)
-{
-    qsort(tally->results, tally->count, sizeof *tally->results, by_ratio);
-    printf("least uncertainty for the error:\n");
-    for (size_t k = 0; k < tally->count && k < WORST_SHOWN; k++) {
-        printf("  %s:\n  ", tally->results[k].case_name);
-        print_result(&tally->results[k]);
-    }
-}
-
-bool honesty_summary(const struct honesty_tally *tally)
-{
-    print_worst(tally);
-    printf("%d cases\n", tally->cases);
-    for (int kind = 0; kind < KINDS; kind++)
-        print_summary(kind_names[kind], summarise(tally, kind));
-    const struct summary all = summarise(tally, KINDS);
-    print_summary("all", all);
-    return (double)all.inside >= INSIDE_TARGET * (double)all.count &&
-           all.median <= MEDIAN_TARGET;
-}
-
-void honesty_tally_free(struct honesty_tally *tally)
-{
-    mem_free(tally->results);
-    memset(tally, 0, sizeof *tally);
 }

@@ -2,36 +2,22 @@
 #ifndef EVENGAP_TESTS_HONESTY_CASE_H
 #define EVENGAP_TESTS_HONESTY_CASE_H
 
-/* A case of the honesty benchmark: a geometry with an exact solution, the figures to be
- * looked at with their exact values, and the tally of how printed uncertainties compare
- * with true errors. Failures abort: a benchmark has nobody to report to. */
-
-#include <stdbool.h>
-#include <stdio.h>
+/* A case of the honesty benchmark: a geometry with an exact solution and the figures to
+ * be looked at with their exact values. It is run as the program runs a file, and what is
+ * tallied is what the program prints: figures and probe readings with their
+ * uncertainties. Failures abort: a benchmark has nobody to report to. */
 
 #include "mesh/geometry.h"
+#include "tests/bench/honesty_tally.h"
 
-enum { HONESTY_FIGURES = 64, HONESTY_NAME = 80 };
+enum { HONESTY_FIGURES = 64 };
 
-enum honesty_kind {
-    HONESTY_POTENTIAL, /* at a point */
-    HONESTY_FIELD_A,   /* V/m or T at a point, along a or b */
-    HONESTY_FIELD_B,
-    HONESTY_FLUX,    /* out of a part, over eps0 or mu0 */
-    HONESTY_SELF,    /* out of a part at 1 with all else at 0: capacitance over eps0 */
-    HONESTY_PEAK,    /* highest field on a part */
-    HONESTY_LENGTH,  /* m, effective length of the path */
-    HONESTY_EXIT,    /* m, effective exit edge */
-    HONESTY_FRINGE_K /* fringe integral of the exit */
-};
-
+/* Values are in SI units. */
 struct honesty_figure {
     enum honesty_kind kind;
-    struct vec2 at; /* m, of points */
-    size_t part;
-    double scale; /* as figure.scale of the program */
+    struct vec2 at;     /* m, of points */
+    size_t part, other; /* other: the column of HONESTY_MATRIX */
     double exact;
-    double values[3]; /* coarse to fine */
 };
 
 struct honesty_case {
@@ -43,37 +29,38 @@ struct honesty_case {
     int count;
 };
 
-struct honesty_tally {
-    struct honesty_result *results; /* [count] every figure so far */
-    size_t count, capacity;
-    int cases;
-    double fineness; /* of the grids */
-    FILE *raw;       /* CSV of the values of every grid; NULL for none */
-};
-
 /** A case with one supply of the given setting (V, or A in magnetic planes) and an empty
  *  region with walls at 0. */
 struct plane *honesty_begin(struct honesty_case *c, const char *name,
                             enum plane_kind kind, double setting, struct vec2 low,
                             struct vec2 high);
 
+/** Gives sides[0..count) of the plane another kind. */
+void honesty_sides(struct plane *plane, const enum side_index *sides, size_t count,
+                   enum side_kind kind);
+
+/** Makes an insulator, a floating conductor of a part. */
+struct part *honesty_insulate(struct part *part, double permittivity);
+struct part *honesty_float(struct part *part, double charge);
+
 /** Adds one figure with its exact value. */
 void honesty_expect(struct honesty_case *c, struct honesty_figure figure);
 
 /** Adds potential and field at a point; a component below 1e-6 of the field is left out,
- *  as it vanishes by symmetry. */
+ *  as it vanishes by symmetry, and so is a potential of 0. */
 void honesty_expect_point(struct honesty_case *c, struct vec2 at, double potential,
                           struct vec2 field);
 
-/** Adds the flux out of a part, with the scale the program gives it. */
+/** Adds figures of the solver's units: fluxes out of a part, at the settings, at 1 V with
+ *  all else at 0, and out of one part with another at 1 V; the force on a part, per eps0 (a
+ *  component of 0 is left out). In turned planes per radian. */
 void honesty_expect_flux(struct honesty_case *c, size_t part, double exact);
+void honesty_expect_capacitance(struct honesty_case *c, size_t part, double exact);
+void honesty_expect_matrix(struct honesty_case *c, size_t part, size_t other,
+                           double exact);
+void honesty_expect_force(struct honesty_case *c, size_t part, struct vec2 exact);
 
-/** Solves the family of grids, prints and tallies every figure, empties the case. */
+/** Runs the case, prints and tallies every figure, empties the case. */
 void honesty_run(struct honesty_case *c, struct honesty_tally *tally);
-
-/** Prints the summary; true if the targets are met. */
-bool honesty_summary(const struct honesty_tally *tally);
-
-void honesty_tally_free(struct honesty_tally *tally);
 
 #endif

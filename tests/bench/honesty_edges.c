@@ -178,6 +178,7 @@ void honesty_edges(struct honesty_tally *tally)
         {"lone square plates", square, PLANE_ELECTRIC_ALONG, 19e-3},
         {"lone square poles", square, PLANE_MAGNETIC_ALONG, 31e-3},
     };
+    honesty_family(tally, "edges");
     check_closed_forms();
     for (int k = 0; k < 2; k++)
         lone_edge_case(tally, &lone[k]);

@@ -18,4 +18,20 @@ void honesty_edges(struct honesty_tally *tally);
 /** Plates and poles that face clamps, with effective edges and fringe integrals. */
 void honesty_clamps(struct honesty_tally *tally);
 
+/** Turned planes: coaxial tubes, spheres within each other, cans. */
+void honesty_turned(struct honesty_tally *tally);
+
+/** Insulators: rods and shells in a lattice, layered lines, spheres and cans, interfaces
+ *  along field lines. */
+void honesty_insulators(struct honesty_tally *tally);
+
+/** Floating conductors with and without a charge. */
+void honesty_floating(struct honesty_tally *tally);
+
+/** Capacitance matrices and forces. */
+void honesty_conductors(struct honesty_tally *tally);
+
+/** Open sides: wires, spheres and discs in free space. */
+void honesty_open(struct honesty_tally *tally);
+
 #endif

@@ -7,47 +7,7 @@
 #include "mesh/geometry_check.h"
 #include "mesh/reader.h"
 #include "shared/mem.h"
-
-/* Reads a text that the reader takes, and checks it. */
-static enum status check(const char *text, struct messages *messages)
-{
-    struct geometry geometry;
-    char whole[4000];
-    (void)snprintf(whole, sizeof whole, "evengap: 1\n%s", text);
-    enum status status =
-        reader_read_text("t.yaml", whole, strlen(whole), &geometry, messages);
-    if (status != STATUS_OK)
-        fail_msg("the reader refused: %s", messages->items[0].text);
-    status = geometry_check(&geometry, messages);
-    geometry_free(&geometry);
-    return status;
-}
-
-static void assert_fine(const char *text)
-{
-    struct messages messages = {0};
-    if (check(text, &messages) != STATUS_OK)
-        fail_msg("%s", messages.items[0].text);
-    assert_int_equal(messages.count, 0);
-    messages_free(&messages);
-}
-
-/* The check gives one error, in a line of the text (counted from 2), with all parts. */
-static void assert_mistake(const char *text, int line, const char *first,
-                           const char *second)
-{
-    struct messages messages = {0};
-    if (check(text, &messages) != STATUS_INPUT)
-        fail_msg("accepted: %s", text);
-    if (messages.count != 1)
-        fail_msg("%zu messages, the last: %s", messages.count,
-                 messages.items[messages.count - 1].text);
-    const char *got = messages.items[0].text;
-    if (strstr(got, first) == NULL || strstr(got, second) == NULL)
-        fail_msg("\"%s\" lacks \"%s\" or \"%s\"", got, first, second);
-    assert_int_equal(messages.items[0].place.line, line);
-    messages_free(&messages);
-}
+#include "tests/mesh/test_check_text.h"
 
 #define PLANE                                                                          \
     "supplies: {p: 9 V}\nplanes:\n  electric_along:\n"                                 \
@@ -289,6 +249,16 @@ static void test_path_through_a_part_is_located(void **state)
     assert_mistake(text, 10, "runs into the part \"stop\"", "line 9");
 }
 
+/* Crossings computed with rounding must not let a path slip through. */
+static void test_path_without_width_through_a_block_is_located(void **state)
+{
+    (void)state;
+    assert_mistake(PLANE PLATES
+                   "      stop: {clamp: , box: {z: [60 mm, 70 mm], x: [-5 mm, 5 mm]}}\n"
+                   "beam: {path: {from: -90 mm, to: 90 mm}}\n",
+                   10, "runs into the part \"stop\"", "line 9");
+}
+
 static void test_folded_path_meets_parts_of_the_half(void **state)
 {
     (void)state;
@@ -466,6 +436,7 @@ int main(void)
         cmocka_unit_test(test_path_must_lie_inside_the_planes_along_it),
         cmocka_unit_test(test_mirror_at_zero_doubles_the_region),
         cmocka_unit_test(test_path_through_a_part_is_located),
+        cmocka_unit_test(test_path_without_width_through_a_block_is_located),
         cmocka_unit_test(test_folded_path_meets_parts_of_the_half),
         cmocka_unit_test(test_footprint_is_checked_across_the_beam),
         cmocka_unit_test(test_probes_must_lie_in_a_plane),

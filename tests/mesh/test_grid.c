@@ -26,7 +26,11 @@ static struct plane *region(struct geometry *g)
 
 static void build(const struct geometry *g, int level, struct grid *grid)
 {
-    assert_int_equal(grid_build(&g->planes[KIND], 1.0, level, 1e9, grid, NULL),
+    assert_int_equal(grid_build(&g->planes[KIND],
+                                &(struct grid_request){.fineness = 1.0,
+                                                       .level = level,
+                                                       .memory_budget = 1e9},
+                                grid, NULL),
                      STATUS_OK);
 }
 
@@ -48,9 +52,12 @@ static void assert_refused(const struct geometry *g, double fineness, double bud
 {
     struct messages messages = {0};
     struct grid grid;
-    assert_int_equal(
-        grid_build(&g->planes[KIND], fineness, 0, budget, &grid, &messages),
-        STATUS_INPUT);
+    assert_int_equal(grid_build(&g->planes[KIND],
+                                &(struct grid_request){.fineness = fineness,
+                                                       .level = 0,
+                                                       .memory_budget = budget},
+                                &grid, &messages),
+                     STATUS_INPUT);
     assert_null(grid.a);
     assert_null(grid.owner);
     assert_true(messages.errors >= 1);
@@ -316,8 +323,16 @@ static void test_twice_the_fineness_gives_twice_the_lines(void **state)
     struct geometry g;
     struct grid one, two;
     slanted(region(&g), "plate", 1.0, 0.0);
-    assert_int_equal(grid_build(&g.planes[KIND], 4.0, 0, 1e9, &one, NULL), STATUS_OK);
-    assert_int_equal(grid_build(&g.planes[KIND], 8.0, 0, 1e9, &two, NULL), STATUS_OK);
+    assert_int_equal(grid_build(&g.planes[KIND],
+                                &(struct grid_request){
+                                    .fineness = 4.0, .level = 0, .memory_budget = 1e9},
+                                &one, NULL),
+                     STATUS_OK);
+    assert_int_equal(grid_build(&g.planes[KIND],
+                                &(struct grid_request){
+                                    .fineness = 8.0, .level = 0, .memory_budget = 1e9},
+                                &two, NULL),
+                     STATUS_OK);
     assert_close((double)two.na / one.na, 2.0, 0.0, 0.1);
     assert_close((double)two.nb / one.nb, 2.0, 0.0, 0.1);
     grid_free(&one);
@@ -348,7 +363,11 @@ static void test_gap_too_thin_names_both_parts_and_the_place(void **state)
     assert_refused(&g, 1.0, 1e9, "first plate", "second plate");
     struct messages messages = {0};
     struct grid grid;
-    assert_int_equal(grid_build(plane, 1.0, 0, 1e9, &grid, &messages), STATUS_INPUT);
+    assert_int_equal(grid_build(plane,
+                                &(struct grid_request){
+                                    .fineness = 1.0, .level = 0, .memory_budget = 1e9},
+                                &grid, &messages),
+                     STATUS_INPUT);
     assert_int_equal(messages.items[0].place.line, 17);
     messages_free(&messages);
     geometry_free(&g);
@@ -433,7 +452,10 @@ static void test_every_failed_allocation_is_reported(void **state)
     while (status == STATUS_MEMORY) {
         struct grid grid;
         mem_fail_at(++k);
-        status = grid_build(plane, 0.3, 0, 1e9, &grid, NULL);
+        status = grid_build(
+            plane,
+            &(struct grid_request){.fineness = 0.3, .level = 0, .memory_budget = 1e9},
+            &grid, NULL);
         mem_fail_at(0);
         assert_true((grid.a == NULL) == (status != STATUS_OK));
         grid_free(&grid);

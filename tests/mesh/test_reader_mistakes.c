@@ -153,7 +153,7 @@ static void test_sides(void **state)
 {
     (void)state;
     static const struct mistake list[] = {
-        {"    sides: {z: open}\n", 6, 16, "expected wall, mirror, antimirror"},
+        {"    sides: {z: free}\n", 6, 16, "expected wall, mirror, antimirror, open"},
         {"    sides: {y: wall}\n", 6, 13, "expected one of z, x"},
         {"    sides: {z: {low: wall, hihg: mirror}}\n", 6, 28,
          "did you mean \"high\"?"},
@@ -174,7 +174,7 @@ static void test_parts(void **state)
         {"{" BOX "}\n", 7, 10, "kind of the part \"a\" is not clear"},
         {"{electrode: p, guard: p, " BOX "}\n", 7, 10, "found several"},
         {"{pole: c, " BOX "}\n", 7, 17,
-         "expected \"electrode\", \"guard\" or \"clamp\""},
+         "expected \"electrode\", \"guard\", \"clamp\", \"floating\" or"},
         {"{electrode: c, " BOX "}\n", 7, 22, "the supply \"c\", which is set in A"},
         {"{electrode: 4 mm, " BOX "}\n", 7, 22, "which is a length"},
         {"{electrode: p*p, " BOX "}\n", 7, 23, "linear in the supplies"},
@@ -194,6 +194,71 @@ static void test_parts(void **state)
     };
     ASSERT_MISTAKES("evengap: 1\n" SUPPLY "planes:\n" REGION "    parts:\n      a: ",
                     list);
+}
+
+static void test_floating_parts_and_insulators(void **state)
+{
+    (void)state;
+    static const struct mistake list[] = {
+        {"{floating: 1 C, " BOX "}\n", 7, 21,
+         "a charge per metre such as 0 C/m; found 1 C, which is a charge"},
+        {"{floating: 3 V, " BOX "}\n", 7, 21, "found 3 V, which is a voltage"},
+        {"{floating: , " BOX "}\n", 7, 11, "found nothing"},
+        {"{floating: 0, guard: p, " BOX "}\n", 7, 10, "found several"},
+        {"{floating: 0, " BOX ", twin: {across: x, potential: 0}}\n", 7, 88,
+         "takes no potential; expected \"floating\" as that of the original"},
+        {"{insulator: 0.5, " BOX "}\n", 7, 22,
+         "a relative permittivity of 1 or more, such as 4.5; found 0.5"},
+        {"{insulator: 4 mm, " BOX "}\n", 7, 22, "which is a length"},
+        {"{insulator: p, " BOX "}\n", 7, 22, "\"p\" is a supply"},
+        {"{insulator: 4, " BOX ", twin: {across: x, potential: 0}}\n", 7, 89,
+         "takes no potential; expected \"insulator\" as that of the original"},
+    };
+    ASSERT_MISTAKES("evengap: 1\n" SUPPLY "planes:\n" REGION "    parts:\n      a: ",
+                    list);
+}
+
+static void test_kinds_of_electric_parts_in_a_magnetic_plane(void **state)
+{
+    (void)state;
+    static const struct mistake list[] = {
+        {"{floating: 0, box: {z: [0, 1 mm], y: [0, 1 mm]}}\n", 6, 21,
+         "expected \"pole\" or \"clamp\"; found \"floating\""},
+        {"{insulator: 2, box: {z: [0, 1 mm], y: [0, 1 mm]}}\n", 6, 22,
+         "expected \"pole\" or \"clamp\"; found \"insulator\""},
+    };
+    ASSERT_MISTAKES("evengap: 1\nplanes:\n  magnetic_along:\n"
+                    "    region: {z: [-1 m, 1 m], y: [-1 m, 1 m]}\n    parts:\n"
+                    "      a: ",
+                    list);
+}
+
+static void test_turned_plane(void **state)
+{
+    (void)state;
+    static const struct mistake list[] = {
+        {"region: {z: [0, 1 m], r: [0, 1 m], x: [0, 1 m]}}\n", 3, 56,
+         "expected one of z, r; found \"x\""},
+        {"region: {z: [0, 1 m], r: [-5 mm, 1 m]}}\n", 3, 46,
+         "expected an interval from 0 mm or more; found -5 mm to 1000 mm"},
+        {"region: {z: [0, 1 m], r: [0, 1 m]}, sides: {r: {low: wall, high: wall}}}\n",
+         3, 74, "always a mirror; expected \"mirror\" or nothing; found \"wall\""},
+        {"region: {z: [0, 1 m], r: [0, 1 m]}, sides: {r: {low: {wall: 3 V}}}}\n", 3, 74,
+         "always a mirror"},
+        {"region: {z: [0, 1 m], r: [0, 1 m]}, sides: {r: {low: open}}}\n", 3, 74,
+         "found \"open\""},
+        {"region: {z: [0, 1 m], r: [0, 1 m]}, sides: {r: shut}}\n", 3, 68,
+         "expected wall, mirror"},
+        {"region: {z: [0, 1 m], r: [0, 1 m]}, parts: {a: {clamp: , disc: {z: 0, r: 5 "
+         "mm, radius: 1 mm}, twin: {across: r}}}}\n",
+         3, 130, "expected z, as a part of a turned plane has no image across r"},
+        {"region: {z: [0, 1 m], r: [0, 1 m]}, parts: {a: {floating: 0 C/m, disc: {z: "
+         "0, "
+         "r: 5 mm, radius: 1 mm}}}}\n",
+         3, 79, "expected a charge such as 0 C; found 0 C/m"},
+    };
+    for (size_t k = 0; k < sizeof list / sizeof list[0]; k++)
+        assert_mistakes("evengap: 1\nplanes:\n  electric_turned: {", &list[k], 1);
 }
 
 static void test_shapes(void **state)
@@ -247,7 +312,9 @@ static void test_probes_limits_and_reference(void **state)
         {"probes: [4 mm]\n", 2, 10, "coordinates such as {z: 0 mm, x: 2 mm}"},
         {"probes: [{r: 0}]\n", 2, 11, "unknown key"},
         {"probes: [{x: 4}]\n", 2, 14, "a length such as 4 mm"},
-        {"probes: [{x: 0, plane: along}]\n", 2, 24, "electric_along, electric_across"},
+        {"probes: [{x: 0, plane: along}]\n", 2, 24,
+         "one of electric_along, electric_across, magnetic_along, magnetic_across, "
+         "electric_turned; found along"},
         {"limits: {ratio: 1e-3}\n", 2, 10, "expected one of ratio_error"},
         {"limits: {ratio_error: 0}\n", 2, 23, "greater than 0"},
         {"limits: {ratio_error: 1 mm}\n", 2, 23, "which is a length"},
@@ -332,6 +399,9 @@ int main(void)
         cmocka_unit_test(test_planes),
         cmocka_unit_test(test_sides),
         cmocka_unit_test(test_parts),
+        cmocka_unit_test(test_floating_parts_and_insulators),
+        cmocka_unit_test(test_kinds_of_electric_parts_in_a_magnetic_plane),
+        cmocka_unit_test(test_turned_plane),
         cmocka_unit_test(test_shapes),
         cmocka_unit_test(test_outline_that_crosses_itself_names_a_point),
         cmocka_unit_test(test_probes_limits_and_reference),

@@ -202,6 +202,92 @@ static void test_face_beside_chords_stays_flat(void **state)
     finish(&shape, &surface);
 }
 
+/* Two points a sixth of the chord from its ends, whatever the spacing. */
+static void test_chords_of_a_curve_have_two_points(void **state)
+{
+    struct vec2 points[72];
+    struct shape shape;
+    struct surface surface;
+    const double chord = 2 * 0.013 * sin(PI / 72);
+
+    (void)state;
+    for (int i = 0; i < 72; i++)
+        points[i] = at(0.013 * cos(i * PI / 36), 0.013 * sin(i * PI / 36));
+    shape = polygon(points, 72, 0);
+    surface = surface_of(&shape, 0.00001);
+    assert_int_equal(surface.count, 144);
+    for (size_t i = 0; i < surface.count; i++) {
+        const struct surface_point *p = &surface.items[i];
+        const double middle = 0.013 * cos(PI / 72);
+        assert_close(vec2_length(p->at), hypot(middle, chord / 3), 1e-12, 0);
+        assert_true(p->reach == 0 && p->bend == 0);
+    }
+    finish(&shape, &surface);
+}
+
+static void assert_on_a_circle(const struct surface_point *p, double s)
+{
+    const struct vec2 place = surface_point_along(p, s);
+    const bool is_outer = p->radius > 0.01;
+    assert_close(vec2_length(vec2_sub(place, at(0.0031, -0.0017))), p->radius, 1e-14,
+                 0);
+    assert_close(p->bend, (is_outer ? 1 : -1) / p->radius, 1e-14, 0);
+    assert_close(vec2_length(vec2_sub(place, p->at)),
+                 2 * p->radius * sin(fabs(s) / (2 * p->radius)), 1e-9, 1e-18);
+}
+
+static void test_stretches_follow_arcs_exactly(void **state)
+{
+    struct shape shape = ring();
+    struct surface surface = surface_of(&shape, 0.0031);
+    double length = 0;
+
+    (void)state;
+    for (size_t i = 0; i < surface.count; i++) {
+        const struct surface_point *p = &surface.items[i];
+        length += 2 * p->reach;
+        assert_on_a_circle(p, p->reach);
+        assert_on_a_circle(p, -0.37 * p->reach);
+    }
+    assert_close(length, 2 * PI * (0.0123 + 0.0077), 1e-13, 0);
+    finish(&shape, &surface);
+}
+
+/* Each stretch ends where the next begins, anticlockwise; four times it turns a corner. */
+static void test_stretches_of_a_box_join(void **state)
+{
+    struct shape shape = box(0, 0, 0.020, 0.010, 0.002);
+    struct surface surface = surface_of(&shape, 0.0007);
+
+    (void)state;
+    for (size_t i = 0; i < surface.count; i++) {
+        const struct surface_point *p = &surface.items[i];
+        const struct surface_point *q = &surface.items[(i + 1) % surface.count];
+        struct vec2 apart = vec2_sub(surface_point_along(p, p->reach),
+                                     surface_point_along(q, -q->reach));
+        assert_close(vec2_length(apart), 0, 0, 1e-16);
+    }
+    finish(&shape, &surface);
+}
+
+static void test_nearest_sharp_corner_is_named(void **state)
+{
+    struct shape shape = box(0, 0, 0.020, 0.010, 0);
+    struct surface surface = surface_of(&shape, 0.0007);
+
+    (void)state;
+    for (size_t i = 0; i < surface.count; i++) {
+        const struct surface_point *p = &surface.items[i];
+        struct vec2 corner =
+            at(p->at.a > 0.010 ? 0.020 : 0, p->at.b > 0.005 ? 0.010 : 0);
+        if (fabs(p->at.a - 0.010) > 1e-9 && fabs(p->at.b - 0.005) > 1e-9)
+            assert_close(vec2_length(vec2_sub(p->corner, corner)), 0, 0, 1e-16);
+        assert_close(vec2_length(vec2_sub(p->at, p->corner)), p->corner_distance, 1e-14,
+                     0);
+    }
+    finish(&shape, &surface);
+}
+
 static void test_bad_spacings_are_refused(void **state)
 {
     struct shape shape = ring();
@@ -249,6 +335,10 @@ int main(void)
         cmocka_unit_test(test_same_arguments_give_the_same_points),
         cmocka_unit_test(test_chords_of_a_circle_have_its_radius),
         cmocka_unit_test(test_face_beside_chords_stays_flat),
+        cmocka_unit_test(test_chords_of_a_curve_have_two_points),
+        cmocka_unit_test(test_stretches_follow_arcs_exactly),
+        cmocka_unit_test(test_stretches_of_a_box_join),
+        cmocka_unit_test(test_nearest_sharp_corner_is_named),
         cmocka_unit_test(test_bad_spacings_are_refused),
         cmocka_unit_test(test_every_failed_allocation_is_reported),
     };

@@ -81,10 +81,11 @@ static void make_part(struct part *part, enum plane_kind kind, int which)
     part->name = mem_text(names[magnetic][which]);
     part->kind = magnetic ? PART_POLE : PART_ELECTRODE;
     part->potential.constant = (which ? 1 : -1) * 55.6;
-    assert_int_equal(
-        shape_init_box(&part->shape, box_corner(kind, -1), box_corner(kind, 1), 0.0011),
-        STATUS_OK);
-    if (which)
+    struct vec2 raise = {0, which && plane_kind_is_turned(kind) ? 0.0157 : 0};
+    assert_int_equal(shape_init_box(&part->shape, vec2_add(box_corner(kind, -1), raise),
+                                    vec2_add(box_corner(kind, 1), raise), 0.0011),
+                     STATUS_OK);
+    if (which && !plane_kind_is_turned(kind))
         shape_mirror(&part->shape, kind == PLANE_ELECTRIC_ACROSS,
                      kind != PLANE_ELECTRIC_ACROSS);
 }
@@ -111,6 +112,8 @@ static void make_plane(struct plane *plane, enum plane_kind kind)
     plane->kind = kind;
     plane->high = (struct vec2){along ? 0.14 : 0.05, 0.0507};
     plane->low = vec2_scale(plane->high, -1);
+    if (plane_kind_is_turned(kind))
+        plane->low.b = 0; /* the axis; two rings instead of two plates */
     plane->parts = MEM_NEW(2, struct part);
     assert_non_null(plane->parts);
     plane->part_count = 2;
@@ -159,8 +162,10 @@ static void make_plane_result(struct plane_result *result, const struct plane *p
 {
     result->present = true;
     result->levels = 2;
-    result->quality[0] = (struct quality){311, 2.3e-16, 4.1e-5, 3.2e-11, 0.17, 1e6};
-    result->quality[1] = (struct quality){1151, 3.7e-16, 1.3e-6, 5.3e-12, 0.63, 4e6};
+    result->quality[0] =
+        (struct quality){311, 2.3e-16, 4.1e-5, 3.2e-11, 0.17, 1e6, 0, 0};
+    result->quality[1] =
+        (struct quality){1151, 3.7e-16, 1.3e-6, 5.3e-12, 0.63, 4e6, 0, 0};
     struct grid *grid = &result->grid;
     grid->plane = plane;
     grid->na = NA;
@@ -260,6 +265,14 @@ static void make_lattice(struct lattice_field *lattice)
             lattice->b[axis][k] = 0.0103 * axis - 0.00017 * (double)k;
         }
     }
+    for (int c = 0; c < 2; c++) { /* 4 along z by 3 along x, 4 along z by 2 along y */
+        lattice->e_err[c] = new_column(12);
+        lattice->b_err[c] = new_column(8);
+        for (int k = 0; k < 12; k++)
+            lattice->e_err[c][k] = 1.234e-3 * (c + 1) * (k + 1);
+        for (int k = 0; k < 8; k++)
+            lattice->b_err[c][k] = 5.67e-10 * (2 * c + 1) * (k + 1);
+    }
     lattice->solid = MEM_NEW(count, unsigned char);
     lattice->solid[5] = 1;
 }
@@ -282,13 +295,15 @@ static void make_figures(struct result *result)
                         .value = 53887.12},
         NULL, NULL);
     add(result,
-        (struct figure){.name = "pass_speed_centre",
+        (struct figure){.name = "centre_pass_speed",
                         .title = "pass speed at the centre",
                         .unit = "m/s",
                         .group = FIGURE_ALONG,
                         .planes = both,
                         .value = 53798.0,
-                        .uncertainty = 2.3},
+                        .uncertainty = 2.3,
+                        .grid_count = 3,
+                        .grids = {53811.7, 53801.3, 53798.8}},
         NULL, "reference point z = 0 mm, x = 0 mm, y = 0 mm");
     add(result,
         (struct figure){.name = "fringe_integral",
@@ -297,8 +312,11 @@ static void make_figures(struct result *result)
                         .group = FIGURE_ALONG,
                         .state = FIGURE_UNSETTLED,
                         .planes = 1U << PLANE_ELECTRIC_ALONG,
-                        .value = 0.1831,
-                        .uncertainty = 0.02},
+                        .value = 0.183,
+                        .uncertainty = 0.02,
+                        .scale = 1,
+                        .grid_count = 3,
+                        .grids = {0.17, 0.19, 0.183}},
         "E, exit", "the three grids do not converge: 0.17, 0.19, 0.183");
     add(result,
         (struct figure){.name = "even_radius",
@@ -307,7 +325,9 @@ static void make_figures(struct result *result)
                         .group = FIGURE_ACROSS,
                         .planes = across,
                         .value = 2.17e-3,
-                        .uncertainty = 1.1e-5},
+                        .uncertainty = 1.1e-5,
+                        .grid_count = 3,
+                        .grids = {2.31e-3, 2.203e-3, 2.178e-3}},
         NULL, NULL);
     add(result,
         (struct figure){.name = "capacitance",
@@ -407,6 +427,9 @@ int fixture_teardown(void **state)
 {
     struct fixture *fixture = *state;
     remove_tree(fixture->folder);
+    if (fixture->path)
+        assert_int_equal(setenv("PATH", fixture->path, 1), 0);
+    mem_free(fixture->path);
     result_free(&fixture->result);
     geometry_free(&fixture->geometry);
     messages_free(&fixture->messages);
@@ -478,4 +501,15 @@ int fixture_entries(const char *path)
         count++;
     (void)closedir(directory);
     return count;
+}
+
+void fixture_show_scripts(struct fixture *fixture)
+{
+    const char *folder = fixture_path(fixture, "bin");
+    const char *program = fixture_path(fixture, "bin/gnuplot");
+    assert_int_equal(mkdir(folder, 0777), 0);
+    fixture_write(program, "#!/bin/sh\n/bin/cat \"$2\"\necho '# </svg>'\n");
+    assert_int_equal(chmod(program, 0755), 0);
+    fixture->path = mem_text(getenv("PATH"));
+    assert_int_equal(setenv("PATH", folder, 1), 0);
 }

@@ -15,6 +15,7 @@ struct fixture {
     struct result result;
     struct messages messages;
     char folder[64]; /* scratch folder, removed with everything in it */
+    char *path;      /* PATH as it was; NULL while it still is */
 };
 
 /** cmocka setup and teardown; *state is a struct fixture. */
@@ -44,6 +45,10 @@ char *fixture_read(const char *path);
 
 /** Writes a small file. */
 void fixture_write(const char *path, const char *text);
+
+/** From now on a program takes gnuplot's place whose picture is the script it was given,
+ *  for tests of what gnuplot is told. The variable PATH is put back by the teardown. */
+void fixture_show_scripts(struct fixture *fixture);
 
 /** Number of entries of a folder without the dots; -1 if there is none. */
 int fixture_entries(const char *path);

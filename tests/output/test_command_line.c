@@ -25,7 +25,8 @@ static void test_options_may_follow_the_file(void **state)
 {
     (void)state;
     struct command command;
-    assert_int_equal(parse("run --grids 2 f.yaml --fineness=1.75 --quiet --output d",
+    assert_int_equal(parse("run --grids 2 f.yaml --fineness=1.75 --within 2.5e-6 "
+                           "--quiet --output d",
                            &command, NULL),
                      STATUS_OK);
     assert_int_equal(command.kind, COMMAND_RUN);
@@ -33,6 +34,7 @@ static void test_options_may_follow_the_file(void **state)
     assert_string_equal(command.output, "d");
     assert_close(command.fineness, 1.75, 0, 0);
     assert_int_equal(command.grids, 2);
+    assert_close(command.within, 2.5e-6, 0, 0);
     assert_true(command.quiet);
 }
 
@@ -76,6 +78,13 @@ static void test_mistakes_name_the_nearest_word(void **state)
         {"run f.yaml --fineness 0", "number from 0.1 to 20, not '0'"},
         {"run f.yaml --fineness nan", "not 'nan'"},
         {"run f.yaml --fineness 2x", "not '2x'"},
+        {"run f.yaml --within 0", "--within takes a number from 1e-12 to 0.1, not '0'"},
+        {"run f.yaml --within 0.2", "not '0.2'"},
+        {"run f.yaml --within nan", "not 'nan'"},
+        {"run f.yaml --within 1e-13", "not '1e-13'"},
+        {"run f.yaml --within", "--within needs a value"},
+        {"run f.yaml --withn 1e-3", "did you mean '--within'?"},
+        {"draw f.yaml --within 1e-3", "unknown option '--within'"},
         {"run f.yaml --grids 4", "from 2 to 3, not '4'"},
         {"run f.yaml --grids 2.5", "not '2.5'"},
         {"run f.yaml --grids 1", "from 2 to 3, not '1'"},

@@ -21,9 +21,12 @@ static const char *const all_files[] = {"electric_along.vtk",
                                         "magnetic_along.svg",
                                         "magnetic_across.vtk",
                                         "magnetic_across.svg",
+                                        "electric_turned.vtk",
+                                        "electric_turned.svg",
                                         "path.csv",
                                         "path.svg",
                                         "ratio_map.svg",
+                                        "convergence.svg",
                                         "lattice.vtk",
                                         "lattice.csv",
                                         "sheet.txt",
@@ -113,6 +116,29 @@ static void test_report_escapes_text_and_embeds_pictures(void **state)
     free(report);
 }
 
+static void test_report_explains_the_convergence_plot_or_its_absence(void **state)
+{
+    struct fixture *fixture = *state;
+    struct figures *figures = &fixture->result.figures;
+    write_to(fixture, "out");
+    char *report = read_from(fixture, "out", "report.html");
+    char *picture = strstr(report, "alt=\"convergence.svg\"");
+    assert_non_null(picture);
+    assert_non_null(strstr(picture, "along the thin line of slope 2"));
+    assert_true(picture < strstr(report, "alt=\"electric_along.svg\""));
+    assert_null(strstr(report, "There is no convergence plot"));
+    free(report);
+    for (size_t k = 0; k < figures->count; k++)
+        figures->items[k].grid_count = 0;
+    write_to(fixture, "none");
+    assert_int_equal(fixture_entries(fixture_path(fixture, "none")), ALL_FILES - 1);
+    report = read_from(fixture, "none", "report.html");
+    assert_null(strstr(report, "convergence.svg"));
+    assert_non_null(strstr(report, "There is no convergence plot: no main figure "
+                                   "changes from grid to grid."));
+    free(report);
+}
+
 static void test_subset_of_planes_writes_its_files_only(void **state)
 {
     struct fixture *fixture = *state;
@@ -122,7 +148,7 @@ static void test_subset_of_planes_writes_its_files_only(void **state)
     result->profile.present = result->section.present = false;
     result->lattice.present = false;
     write_to(fixture, "out");
-    assert_int_equal(fixture_entries(fixture_path(fixture, "out")), 5);
+    assert_int_equal(fixture_entries(fixture_path(fixture, "out")), 6);
     char *text = read_from(fixture, "out", "electric_along.vtk");
     assert_non_null(text);
     free(text);
@@ -136,8 +162,8 @@ static void test_without_gnuplot_only_plots_are_missing(void **state)
     write_to(fixture, "out");
     assert_int_equal(setenv("PATH", path, 1), 0);
     mem_free(path);
-    assert_int_equal(fixture_entries(fixture_path(fixture, "out")), ALL_FILES - 6);
-    assert_int_equal(fixture->messages.count, 6);
+    assert_int_equal(fixture_entries(fixture_path(fixture, "out")), ALL_FILES - 8);
+    assert_int_equal(fixture->messages.count, 8);
     assert_int_equal(fixture->messages.errors, 0);
     assert_non_null(strstr(fixture->messages.items[0].text, "gnuplot"));
     char *summary = read_from(fixture, "out", "summary.json");
@@ -188,6 +214,7 @@ int main(void)
         EACH(test_second_run_gives_the_same_bytes),
         EACH(test_pictures_keep_odd_names_readable),
         EACH(test_report_escapes_text_and_embeds_pictures),
+        EACH(test_report_explains_the_convergence_plot_or_its_absence),
         EACH(test_subset_of_planes_writes_its_files_only),
         EACH(test_without_gnuplot_only_plots_are_missing),
         EACH(test_value_that_is_not_finite_writes_nothing),

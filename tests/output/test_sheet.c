@@ -68,6 +68,23 @@ static void test_absent_plane_is_named_and_claims_nothing(void **state)
     free(text);
 }
 
+/* The fixture has all planes; without the turned one nobody needs to know r. */
+static void test_r_is_explained_where_it_occurs(void **state)
+{
+    struct fixture *fixture = *state;
+    char *text = write_sheet(&fixture->result);
+    assert_non_null(strstr(text, "r is the distance from the axis z"));
+    assert_non_null(strstr(text, "5 electric_turned (z, r), finest grid 41 by 31"));
+    assert_non_null(strstr(text, "round about the axis z"));
+    free(text);
+    fixture->result.planes[PLANE_ELECTRIC_TURNED].present = false;
+    text = write_sheet(&fixture->result);
+    fixture->result.planes[PLANE_ELECTRIC_TURNED].present = true;
+    assert_null(strstr(text, "r is the distance"));
+    assert_non_null(strstr(text, "5 electric_turned: not in the file"));
+    free(text);
+}
+
 static void test_all_cautions_are_printed(void **state)
 {
     char *text = write_sheet(&((struct fixture *)*state)->result);
@@ -79,6 +96,38 @@ static void test_all_cautions_are_printed(void **state)
     for (size_t k = 0; k < sizeof words / sizeof words[0]; k++)
         assert_non_null(strstr(cautions, words[k]));
     free(text);
+}
+
+/* Tables of parts say whether their charges are per metre or of a whole ring. */
+static void test_tables_of_parts_say_what_they_count(void **state)
+{
+    (void)state;
+    struct figures figures = {0};
+    static const unsigned planes[] = {1u << PLANE_ELECTRIC_ALONG,
+                                      1u << PLANE_ELECTRIC_ACROSS,
+                                      1u << PLANE_ELECTRIC_TURNED};
+    for (int k = 0; k < 3; k++) {
+        const struct figure figure = {.name = "charge",
+                                      .title = "charge",
+                                      .unit = k == 2 ? "C" : "C/m",
+                                      .group = FIGURE_HARDWARE,
+                                      .planes = planes[k],
+                                      .value = 1.5e-9};
+        assert_int_equal(figures_add(&figures, &figure, "ring", NULL), STATUS_OK);
+    }
+    struct capture capture;
+    capture_open(&capture);
+    sheet_figures(&capture.sink, &figures);
+    capture_close(&capture);
+    char *metre = strstr(capture.text, "  Per metre of depth; capacitance of a part");
+    char *whole = strstr(capture.text, "  Of whole rings; capacitance of a part");
+    assert_true(metre != NULL && whole != NULL);
+    assert_true(metre < strstr(capture.text, "electric_along"));
+    assert_null(strstr(metre + 5, "Per metre"));
+    assert_true(strstr(capture.text, "electric_across") < whole);
+    assert_true(whole < strstr(capture.text, "electric_turned"));
+    free(capture.text);
+    figures_free(&figures);
 }
 
 static void add(struct figures *figures, const char *name, enum figure_state state,
@@ -148,7 +197,9 @@ int main(void)
         cmocka_unit_test(test_every_figure_is_there_in_practical_units),
         cmocka_unit_test(test_lines_stay_within_88_columns),
         cmocka_unit_test(test_absent_plane_is_named_and_claims_nothing),
+        cmocka_unit_test(test_r_is_explained_where_it_occurs),
         cmocka_unit_test(test_all_cautions_are_printed),
+        cmocka_unit_test(test_tables_of_parts_say_what_they_count),
         cmocka_unit_test(test_enge_functions_make_one_table),
         cmocka_unit_test(test_verdict_words_cover_all_cases),
     };

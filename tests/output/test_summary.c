@@ -68,6 +68,12 @@ static void test_every_figure_reads_back(void **state)
             check_number(object, "value", figure->value);
             check_number(object, "uncertainty", figure->uncertainty);
         }
+        const json_t *grids = json_object_get(object, "grids");
+        assert_true(json_is_array(grids));
+        assert_int_equal(json_array_size(grids), figure->grid_count);
+        for (int l = 0; l < figure->grid_count; l++)
+            assert_close(json_number_value(json_array_get(grids, (size_t)l)),
+                         figure->grids[l], 1e-15, 0);
     }
     json_t *planes = json_object_get(json_array_get(array, 1), "planes");
     assert_int_equal(json_array_size(planes), 2);

@@ -21,7 +21,8 @@ except ImportError:
     sys.exit(77)
 
 AXES = {"electric_along": "zx", "electric_across": "xy",
-        "magnetic_along": "zy", "magnetic_across": "xy"}
+        "magnetic_along": "zy", "magnetic_across": "xy",
+        "electric_turned": "zr"}
 failures = []
 compared = 0
 
@@ -121,8 +122,16 @@ def compare_lattice(path, table):
         if symbol + "x" in rows[0]:
             want = [float(row[symbol + axis]) for row in rows for axis in "xyz"]
             compare_array(data, name, want, 3, path)
+            want = [float(row[symbol + axis + "_uncertainty"])
+                    for row in rows for axis in "xyz"]
+            check(all(value >= 0 for value in want), f"{table}: uncertainties of {symbol}")
+            compare_array(data, name + "_uncertainty", want, 3, path)
         else:
             check(data.GetPointData().GetArray(name) is None, f"{path}: stray {name}")
+            check(data.GetPointData().GetArray(name + "_uncertainty") is None,
+                  f"{path}: stray uncertainty of {name}")
+    check(data.GetPointData().GetNumberOfArrays() == 1 + 2 * sum(
+        symbol + "x" in rows[0] for symbol in "EB"), f"{path}: number of arrays")
 
 
 def compare_folder(folder):

@@ -37,7 +37,7 @@ expect_words()
 result_files()
 {
     find "$1" -type f -printf '%f\n' |
-        sed -E 's/^(electric|magnetic)_(along|across)\./<plane>./' | sort -u
+        sed -E 's/^(electric|magnetic)_(along|across|turned)\./<plane>./' | sort -u
 }
 
 check_words()

@@ -12,6 +12,7 @@
 #include "shared/constants.h"
 #include "solver/extrapolate.h"
 #include "solver/plane_solution.h"
+#include "tests/support/lattice_of_rods.h"
 #include "tests/support/scene.h"
 
 #define INNER 3.17e-3
@@ -33,7 +34,9 @@ static void solve(const struct geometry *g, double fineness, int level,
                   struct plane_solution *solution)
 {
     assert_int_equal(
-        plane_solve(g, PLANE_ELECTRIC_ACROSS, fineness, level, solution, NULL),
+        plane_solve(g, PLANE_ELECTRIC_ACROSS,
+                    &(struct grid_request){.fineness = fineness, .level = level},
+                    solution, NULL),
         STATUS_OK);
 }
 
@@ -175,6 +178,36 @@ static void test_wire_pair_charge_matches_closed_form(void **state)
     geometry_free(&g);
 }
 
+/* A conducting rod in a mean field: one cell of a square lattice (lattice_of_rods.h; a
+ * permittivity of 1e12 stands for a conductor to 1e-12). */
+static void test_rod_in_a_mean_field_matches_the_lattice(void **state)
+{
+    (void)state;
+    const double cell = 40e-3, half = 0.5 * cell;
+    struct geometry g;
+    struct plane_solution s;
+    double flux[3];
+    scene_begin(&g, 1.0, false);
+    struct plane *p = scene_plane(&g, PLANE_ELECTRIC_ACROSS, -half, half, -half, half);
+    scene_wall(p, SIDE_A_LOW, -half, -half);
+    scene_wall(p, SIDE_A_HIGH, half, half);
+    p->sides[SIDE_B_LOW].kind = p->sides[SIDE_B_HIGH].kind = SIDE_MIRROR;
+    scene_disc(p, "rod", 0.0, 0.0, 0.0, 0.3 * cell);
+    for (int l = 0; l < 3; l++) {
+        solve(&g, FINENESS, l, &s);
+        flux[l] = s.side_flux[SIDE_A_HIGH];
+        plane_solution_free(&s);
+    }
+    const double exact =
+        cell * lattice_of_rods((struct rod){0.3, 1e12, 0.0, 0.0}).effective;
+    const struct estimate e = extrapolate(flux, 3, 0.0);
+    print_message("  flux: relative error %.2e (%.0e)\n", e.value / exact - 1.0,
+                  e.uncertainty / exact);
+    assert_close(e.value, exact, 1e-6, 0.0);
+    assert_close(e.value, exact, 0.0, e.uncertainty);
+    geometry_free(&g);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -182,6 +215,7 @@ int main(void)
         cmocka_unit_test(test_coaxial_surface_field_is_second_order),
         cmocka_unit_test(test_coaxial_charge_is_second_order),
         cmocka_unit_test(test_eccentric_charge_matches_closed_form),
+        cmocka_unit_test(test_rod_in_a_mean_field_matches_the_lattice),
         cmocka_unit_test(test_wire_pair_charge_matches_closed_form),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -15,7 +15,10 @@ enum { LEVELS = 3 };
 static void solve(const struct geometry *g, enum plane_kind kind, int level,
                   struct plane_solution *s)
 {
-    assert_int_equal(plane_solve(g, kind, 1.0, level, s, NULL), STATUS_OK);
+    assert_int_equal(
+        plane_solve(g, kind, &(struct grid_request){.fineness = 1.0, .level = level}, s,
+                    NULL),
+        STATUS_OK);
 }
 
 /* |field along b| at points (a[k], 0), extrapolated over the default family. */
@@ -170,8 +173,11 @@ static double square_line(double ratio, double fineness, int levels)
     scene_box(plane, "inner", 1.0, 0.0, ratio * half, 0.0, ratio * half, 0.0);
     for (int l = 0; l < levels; l++) {
         struct plane_solution s;
-        assert_int_equal(plane_solve(&g, PLANE_ELECTRIC_ACROSS, fineness, l, &s, NULL),
-                         STATUS_OK);
+        assert_int_equal(
+            plane_solve(&g, PLANE_ELECTRIC_ACROSS,
+                        &(struct grid_request){.fineness = fineness, .level = l}, &s,
+                        NULL),
+            STATUS_OK);
         values[l] = 4.0 * s.part_flux[0];
         plane_solution_free(&s);
     }
@@ -189,15 +195,19 @@ static void test_square_line_two_grids_within_1e_5(void **state)
     assert_close(got, 10.23409256936805, 1e-5, 0.0);
 }
 
-static void test_square_line_other_ratios(void **state)
+/* All listed ratios, three grids at fineness 4. */
+static void test_square_lines_three_grids_within_1e_8(void **state)
 {
     (void)state;
-    const double third = square_line(1.0 / 3.0, 4.0, 3),
-                 two_fifths = square_line(0.4, 4.0, 3);
-    print_message("  three grids: errors %.2e %.2e\n", third / 6.215547284858944 - 1.0,
-                  two_fifths / 7.561531539810583 - 1.0);
-    assert_close(third, 6.215547284858944, 1e-6, 0.0);
-    assert_close(two_fifths, 7.561531539810583, 1e-6, 0.0);
+    static const double ratio[3] = {0.5, 1.0 / 3.0, 0.4};
+    static const double table[3] = {10.23409256936805, 6.215547284858944,
+                                    7.561531539810583};
+    for (int k = 0; k < 3; k++) {
+        const double got = square_line(ratio[k], 4.0, 3);
+        print_message("  side ratio %.4f: relative error %.2e\n", ratio[k],
+                      got / table[k] - 1.0);
+        assert_close(got, table[k], 1e-8, 0.0);
+    }
 }
 
 /* Box with side walls at +-V, top and bottom earthed:
@@ -223,8 +233,10 @@ static double side_wall_field(double g_over_d)
     for (int l = 0; l < LEVELS; l++) {
         struct plane_solution s;
         double f[2];
-        assert_int_equal(plane_solve(&g, PLANE_ELECTRIC_ACROSS, 4.0, l, &s, NULL),
-                         STATUS_OK);
+        assert_int_equal(
+            plane_solve(&g, PLANE_ELECTRIC_ACROSS,
+                        &(struct grid_request){.fineness = 4.0, .level = l}, &s, NULL),
+            STATUS_OK);
         assert_int_equal(plane_field(&s, (struct vec2){0.0, 0.0}, f, NULL), STATUS_OK);
         values[l] = -f[0] / (640.0 / d);
         plane_solution_free(&s);
@@ -281,7 +293,7 @@ int main(void)
         cmocka_unit_test(test_overhang_rules_follow_from_the_maps),
         cmocka_unit_test(test_overhang_is_found_by_the_solver),
         cmocka_unit_test(test_square_line_two_grids_within_1e_5),
-        cmocka_unit_test(test_square_line_other_ratios),
+        cmocka_unit_test(test_square_lines_three_grids_within_1e_8),
         cmocka_unit_test(test_side_wall_box_follows_the_series),
         cmocka_unit_test(test_linear_guards_make_the_field_uniform),
     };

@@ -101,7 +101,10 @@ static void test_gradients_are_second_order_at_and_between_nodes(void **state)
     coaxial(&g);
     for (int l = 0; l < LEVELS; l++) {
         struct plane_solution s;
-        assert_int_equal(plane_solve(&g, KIND, 2.0, l, &s, NULL), STATUS_OK);
+        assert_int_equal(
+            plane_solve(&g, KIND, &(struct grid_request){.fineness = 2.0, .level = l},
+                        &s, NULL),
+            STATUS_OK);
         inner[l] = node_error(&s, false);
         cut[l] = node_error(&s, true);
         between[l] = point_error(&s);
@@ -125,7 +128,10 @@ static void test_gradient_on_a_flat_face_is_that_of_the_gap(void **state)
     struct plane *p = scene_plane(&g, KIND, 0.0, 37e-3, 0.0, 21e-3);
     p->sides[SIDE_A_LOW].kind = p->sides[SIDE_A_HIGH].kind = SIDE_MIRROR;
     scene_box(p, "upper", 1.0, 0.0, 37e-3, gap, 17e-3, 0.0);
-    assert_int_equal(plane_solve(&g, KIND, 1.0, 0, &s, NULL), STATUS_OK);
+    assert_int_equal(plane_solve(&g, KIND,
+                                 &(struct grid_request){.fineness = 1.0, .level = 0},
+                                 &s, NULL),
+                     STATUS_OK);
     const int nodes = s.grid.na * s.grid.nb;
     double *ga = MEM_NEW((size_t)nodes, double), *gb = MEM_NEW((size_t)nodes, double);
     field_at_nodes(&s.grid, s.phi, s.part_value, ga, gb);

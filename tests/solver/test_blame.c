@@ -18,7 +18,11 @@ static void test_the_space_held_least_is_named(void **state)
     struct plane *plane =
         scene_plane(&g, PLANE_ELECTRIC_ACROSS, -40e-3, 40e-3, -40e-3, 40e-3);
     scene_cut_disc(scene_disc(plane, "ring", 1.0, 3e-3, 2e-3, 9e-3), 3e-3, 2e-3, 7e-3);
-    assert_int_equal(grid_build(plane, 0.7, 0, 20e9, &grid, NULL), STATUS_OK);
+    assert_int_equal(grid_build(plane,
+                                &(struct grid_request){
+                                    .fineness = 0.7, .level = 0, .memory_budget = 20e9},
+                                &grid, NULL),
+                     STATUS_OK);
     assert_int_equal(blame_space(&grid, &blame), STATUS_OK);
     assert_true(hypot(blame.at.a - 3e-3, blame.at.b - 2e-3) > 9e-3);
     assert_true(blame.hold > 0.0 && blame.hold < 0.5);
@@ -34,7 +38,12 @@ static void floating_grid(struct geometry *g, double fineness, struct grid *grid
     struct plane *plane =
         scene_plane(g, PLANE_ELECTRIC_ACROSS, -40e-3, 40e-3, -40e-3, 40e-3);
     scene_box(plane, "bar", 1.0, -11e-3, 5e-3, 2e-3, 9e-3, 0.0);
-    assert_int_equal(grid_build(plane, fineness, 0, 20e9, grid, NULL), STATUS_OK);
+    assert_int_equal(grid_build(plane,
+                                &(struct grid_request){.fineness = fineness,
+                                                       .level = 0,
+                                                       .memory_budget = 20e9},
+                                grid, NULL),
+                     STATUS_OK);
     for (int s = 0; s < SIDE_COUNT; s++)
         plane->sides[s].kind = SIDE_MIRROR;
     for (int n = 0; n < grid->na * grid->nb; n++)

@@ -38,9 +38,13 @@ static void begin(struct bench *b)
     scene_wall(m, SIDE_A_HIGH, -1590.0, 1590.0);
     scene_wall(m, SIDE_B_LOW, -1590.0, -1590.0);
     scene_wall(m, SIDE_B_HIGH, 1590.0, 1590.0);
-    assert_int_equal(plane_solve(g, PLANE_ELECTRIC_ACROSS, 1.0, 0, &b->electric, NULL),
+    assert_int_equal(plane_solve(g, PLANE_ELECTRIC_ACROSS,
+                                 &(struct grid_request){.fineness = 1.0, .level = 0},
+                                 &b->electric, NULL),
                      STATUS_OK);
-    assert_int_equal(plane_solve(g, PLANE_MAGNETIC_ALONG, 1.0, 0, &b->magnetic, NULL),
+    assert_int_equal(plane_solve(g, PLANE_MAGNETIC_ALONG,
+                                 &(struct grid_request){.fineness = 1.0, .level = 0},
+                                 &b->magnetic, NULL),
                      STATUS_OK);
     b->view = (struct view){g,
                             {[PLANE_ELECTRIC_ACROSS] = &b->electric,
@@ -176,7 +180,9 @@ static void test_vanishing_field_has_no_reference(void **state)
     struct plane *p =
         scene_plane(&g, PLANE_MAGNETIC_ALONG, -60e-3, 60e-3, -HALF_Y, HALF_Y);
     scene_wall(p, SIDE_B_HIGH, 1.0, 1.0);
-    assert_int_equal(plane_solve(&g, PLANE_MAGNETIC_ALONG, 1.0, 0, &dead, NULL),
+    assert_int_equal(plane_solve(&g, PLANE_MAGNETIC_ALONG,
+                                 &(struct grid_request){.fineness = 1.0, .level = 0},
+                                 &dead, NULL),
                      STATUS_OK);
     const struct section_source source = {&b.electric, &dead, 0.0};
     assert_int_equal(section_reference(&source, 0.0, 0.0, &reference),

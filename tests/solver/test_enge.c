@@ -198,7 +198,9 @@ static void enge_of(const struct geometry *g, double from, double to,
     with_path.beam.path_from = from;
     with_path.beam.path_to = to;
     memset(figures, 0, sizeof *figures);
-    assert_int_equal(plane_solve(g, PLANE_ELECTRIC_ALONG, 0.5, 0, &plane, NULL),
+    assert_int_equal(plane_solve(g, PLANE_ELECTRIC_ALONG,
+                                 &(struct grid_request){.fineness = 0.5, .level = 0},
+                                 &plane, NULL),
                      STATUS_OK);
     struct view view = {.geometry = &with_path};
     view.planes[PLANE_ELECTRIC_ALONG] = &plane;

@@ -25,7 +25,10 @@ static void solve(enum plane_kind kind, const double c[3], struct geometry *g,
     scene_wall(p, SIDE_A_HIGH, hl, hh);
     scene_wall(p, SIDE_B_LOW, ll, hl);
     scene_wall(p, SIDE_B_HIGH, lh, hh);
-    assert_int_equal(plane_solve(g, kind, 1.0, 0, s, NULL), STATUS_OK);
+    assert_int_equal(plane_solve(g, kind,
+                                 &(struct grid_request){.fineness = 1.0, .level = 0}, s,
+                                 NULL),
+                     STATUS_OK);
 }
 
 static void expand(enum plane_kind kind, const double c[3], struct expansion *e)
@@ -114,7 +117,9 @@ static void test_circle_must_lie_in_free_space(void **state)
     struct plane *p =
         scene_plane(&g, PLANE_ELECTRIC_ACROSS, -HALF_X, HALF_X, -HALF_Y, HALF_Y);
     scene_box(p, "plate", 1.0, 6e-3, 8e-3, -5e-3, 5e-3, 0.0);
-    assert_int_equal(plane_solve(&g, PLANE_ELECTRIC_ACROSS, 1.0, 0, &s, NULL),
+    assert_int_equal(plane_solve(&g, PLANE_ELECTRIC_ACROSS,
+                                 &(struct grid_request){.fineness = 1.0, .level = 0},
+                                 &s, NULL),
                      STATUS_OK);
     assert_int_equal(expansion_of_plane(&s, 5e-3, &e), STATUS_OK);
     assert_int_equal(expansion_of_plane(&s, 7e-3, &e), STATUS_SIZE);

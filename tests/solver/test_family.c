@@ -72,6 +72,23 @@ static void test_figures_are_combined_one_by_one(void **state)
     family_free(levels);
 }
 
+static void test_figures_keep_the_values_of_their_grids(void **state)
+{
+    (void)state;
+    struct figures levels[LEVELS], combined;
+    family(levels);
+    assert_int_equal(family_figures(levels, LEVELS, &combined), STATUS_OK);
+    for (size_t k = 0; k < FIGURES; k++) {
+        const struct figure *figure = &combined.items[k];
+        const bool has_grids = figure->state != FIGURE_MISSING && figure->planes != 0;
+        assert_int_equal(figure->grid_count, has_grids ? LEVELS : 0);
+        for (int l = 0; l < figure->grid_count; l++)
+            assert_true(figure->grids[l] == levels[l].items[k].value);
+    }
+    figures_free(&combined);
+    family_free(levels);
+}
+
 static void test_figure_that_swings_is_unsettled_and_shows_its_values(void **state)
 {
     (void)state;
@@ -172,6 +189,7 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(test_figures_are_combined_one_by_one),
+        cmocka_unit_test(test_figures_keep_the_values_of_their_grids),
         cmocka_unit_test(test_figure_that_swings_is_unsettled_and_shows_its_values),
         cmocka_unit_test(test_figure_missing_on_one_grid_is_missing),
         cmocka_unit_test(test_figure_that_vanishes_against_its_scale_is_good),

@@ -22,7 +22,11 @@ static void test_uniform_gradient_has_flux_through_the_sides_only(void **state)
     scene_begin(&g, 1.0, false);
     struct plane *p = scene_plane(&g, KIND, -7.0, 31.0, 3.0, 29.0);
     scene_box(p, "box", 1.0, 4.0, 9.0, 11.0, 13.0, 0.0);
-    assert_int_equal(grid_build(p, 1.0, 1, 1e9, &grid, NULL), STATUS_OK);
+    assert_int_equal(grid_build(p,
+                                &(struct grid_request){
+                                    .fineness = 1.0, .level = 1, .memory_budget = 1e9},
+                                &grid, NULL),
+                     STATUS_OK);
     double *phi = MEM_NEW((size_t)(grid.na * grid.nb), double);
     for (int n = 0; n < grid.na * grid.nb; n++)
         phi[n] = slope_a * grid.a[n % grid.na] + slope_b * grid.b[n / grid.na];
@@ -53,7 +57,10 @@ static void test_coaxial_flux_matches_the_closed_form(void **state)
     scene_cut_disc(scene_box(p, "shell", 0.0, -13e-3, 13e-3, -13e-3, 13e-3, 0.0), 0.0,
                    0.0, 11.3e-3);
     scene_disc(p, "core", 1.0, 0.0, 0.0, 3.17e-3);
-    assert_int_equal(plane_solve(&g, KIND, 2.0, 1, &s, NULL), STATUS_OK);
+    assert_int_equal(plane_solve(&g, KIND,
+                                 &(struct grid_request){.fineness = 2.0, .level = 1},
+                                 &s, NULL),
+                     STATUS_OK);
     assert_close(s.part_flux[1], 2.0 * PI * 2.385 / log(11.3 / 3.17), 2e-3, 0.0);
     assert_close(s.part_flux[0], -s.part_flux[1], 1e-11, 0.0);
     plane_solution_free(&s);
@@ -70,7 +77,10 @@ static void test_mirror_sides_have_no_flux(void **state)
     p->sides[SIDE_A_LOW].kind = SIDE_MIRROR;
     p->sides[SIDE_B_HIGH].kind = SIDE_MIRROR;
     scene_disc(p, "rod", 1.0, 0.0, 15.1e-3, 4.7e-3);
-    assert_int_equal(plane_solve(&g, KIND, 1.0, 1, &s, NULL), STATUS_OK);
+    assert_int_equal(plane_solve(&g, KIND,
+                                 &(struct grid_request){.fineness = 1.0, .level = 1},
+                                 &s, NULL),
+                     STATUS_OK);
     assert_true(s.side_flux[SIDE_A_LOW] == 0.0);
     assert_true(s.side_flux[SIDE_B_HIGH] == 0.0);
     assert_true(s.part_flux[0] > 1.0 && s.side_flux[SIDE_A_HIGH] < -0.1);
@@ -92,7 +102,10 @@ static void test_saddle_without_net_flux_is_balanced(void **state)
     scene_wall(p, SIDE_A_HIGH, -1.0, 1.0);
     scene_wall(p, SIDE_B_LOW, 1.0, -1.0);
     scene_wall(p, SIDE_B_HIGH, -1.0, 1.0);
-    assert_int_equal(plane_solve(&g, KIND, 1.0, 1, &s, NULL), STATUS_OK);
+    assert_int_equal(plane_solve(&g, KIND,
+                                 &(struct grid_request){.fineness = 1.0, .level = 1},
+                                 &s, NULL),
+                     STATUS_OK);
     for (int side = 0; side < SIDE_COUNT; side++)
         assert_close(s.side_flux[side], 0.0, 0.0, 1e-10 * 385.7);
     assert_at_most(s.quality.flux_imbalance, 1e-12);
@@ -109,7 +122,11 @@ static void test_no_field_has_no_flux_and_no_imbalance(void **state)
     scene_begin(&g, 1.0, false);
     struct plane *p = scene_plane(&g, KIND, -7e-3, 31e-3, 3e-3, 29e-3);
     scene_disc(p, "rod", 1.0, 10e-3, 15.1e-3, 4.7e-3);
-    assert_int_equal(grid_build(p, 1.0, 0, 1e9, &grid, NULL), STATUS_OK);
+    assert_int_equal(grid_build(p,
+                                &(struct grid_request){
+                                    .fineness = 1.0, .level = 0, .memory_budget = 1e9},
+                                &grid, NULL),
+                     STATUS_OK);
     double *phi = MEM_NEW((size_t)(grid.na * grid.nb), double);
     assert_int_equal(flux_measure(&grid, phi, part, side, &imbalance), STATUS_OK);
     assert_true(part[0] == 0.0 && imbalance == 0.0);

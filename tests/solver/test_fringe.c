@@ -80,6 +80,46 @@ static void test_field_left_at_the_ends_is_told(void **state)
     assert_close(e.leftover_to, 0.023, 1e-12, 0.0);
 }
 
+/* F = exp(-(z - z0)/w) beyond the flat: what lies beyond the end is F w exactly. */
+static void test_tail_of_an_exponential_is_exact(void **state)
+{
+    (void)state;
+    static struct path path;
+    fill(&path);
+    const double width = 0.031;
+    for (int k = 0; k < PATH_POINTS; k++)
+        f[k] = CENTRE * exp(-fmax(fabs(path.z[k]) - 0.04, 0.0) / width);
+    const struct fringe e = fringe_of(&path, f, CENTRE, 0.0, 20e-3);
+    assert_close(e.tail_from, width * exp(-0.07 / width), 1e-9, 0.0);
+    assert_close(e.tail_to, width * exp(-0.09 / width), 1e-9, 0.0);
+    assert_false(e.inside_from || e.inside_to);
+}
+
+/* F = x0/x: one e-fold of x beyond the end adds F x. */
+static void test_tail_of_a_field_that_falls_slowly_is_one_more_efold(void **state)
+{
+    (void)state;
+    static struct path path;
+    fill(&path);
+    for (int k = 0; k < PATH_POINTS; k++)
+        f[k] = CENTRE * 5e-3 / fmax(fabs(path.z[k]), 5e-3);
+    const struct fringe e = fringe_of(&path, f, CENTRE, 0.0, 20e-3);
+    assert_close(e.tail_to, 5e-3, 0.02, 0.0);
+    assert_close(e.tail_from, 5e-3, 0.02, 0.0);
+}
+
+static void test_field_that_does_not_fall_is_taken_to_go_on(void **state)
+{
+    (void)state;
+    static struct path path;
+    fill(&path);
+    for (int k = 0; k < PATH_POINTS; k++)
+        f[k] = path.z[k] > 0.05 ? 0.4 * CENTRE : CENTRE;
+    const struct fringe e = fringe_of(&path, f, CENTRE, 0.01, 20e-3);
+    assert_close(e.tail_to, 0.4 * 0.12, 1e-12, 0.0);
+    assert_true(e.inside_from && !e.inside_to && e.tail_from == 0.0);
+}
+
 static void test_gap_lies_between_the_nearest_faces(void **state)
 {
     (void)state;
@@ -126,6 +166,9 @@ int main(void)
         cmocka_unit_test(test_fringe_integral_is_the_width_over_the_gap),
         cmocka_unit_test(test_edges_do_not_depend_on_the_reference_inside_the_flat),
         cmocka_unit_test(test_field_left_at_the_ends_is_told),
+        cmocka_unit_test(test_tail_of_an_exponential_is_exact),
+        cmocka_unit_test(test_tail_of_a_field_that_falls_slowly_is_one_more_efold),
+        cmocka_unit_test(test_field_that_does_not_fall_is_taken_to_go_on),
         cmocka_unit_test(test_gap_lies_between_the_nearest_faces),
         cmocka_unit_test(test_symmetry_side_is_the_middle_of_the_gap),
     };

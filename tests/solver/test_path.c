@@ -110,7 +110,10 @@ static void saddle(struct geometry *g, struct plane_solution *s)
     scene_wall(p, SIDE_A_HIGH, -1.0, 1.0);
     scene_wall(p, SIDE_B_LOW, 1.0, -1.0);
     scene_wall(p, SIDE_B_HIGH, -1.0, 1.0);
-    assert_int_equal(plane_solve(g, PLANE_ELECTRIC_ALONG, 1.0, 0, s, NULL), STATUS_OK);
+    assert_int_equal(plane_solve(g, PLANE_ELECTRIC_ALONG,
+                                 &(struct grid_request){.fineness = 1.0, .level = 0}, s,
+                                 NULL),
+                     STATUS_OK);
 }
 
 static void test_samples_are_the_field_on_every_line(void **state)

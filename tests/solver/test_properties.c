@@ -57,7 +57,10 @@ static void scene(struct geometry *g, const struct map *m, double setting, doubl
 
 static void solve(const struct geometry *g, struct plane_solution *s)
 {
-    assert_int_equal(plane_solve(g, PLANE_ELECTRIC_ACROSS, 1.0, 1, s, NULL), STATUS_OK);
+    assert_int_equal(plane_solve(g, PLANE_ELECTRIC_ACROSS,
+                                 &(struct grid_request){.fineness = 1.0, .level = 1}, s,
+                                 NULL),
+                     STATUS_OK);
 }
 
 /* Point k of a scatter over the region of scene(). */

@@ -16,8 +16,11 @@ enum { LEVELS = 2 };
 static void solve(const struct geometry *g, double fineness, int level,
                   struct plane_solution *s)
 {
-    assert_int_equal(plane_solve(g, PLANE_ELECTRIC_ACROSS, fineness, level, s, NULL),
-                     STATUS_OK);
+    assert_int_equal(
+        plane_solve(g, PLANE_ELECTRIC_ACROSS,
+                    &(struct grid_request){.fineness = fineness, .level = level}, s,
+                    NULL),
+        STATUS_OK);
 }
 
 /* Box driven by its walls alone: no key lines, so half and full grids coincide. Top at

@@ -19,7 +19,11 @@
 
 static void build(const struct geometry *g, int level, struct grid *grid)
 {
-    assert_int_equal(grid_build(&g->planes[KIND], 1.0, level, 1e9, grid, NULL),
+    assert_int_equal(grid_build(&g->planes[KIND],
+                                &(struct grid_request){.fineness = 1.0,
+                                                       .level = level,
+                                                       .memory_budget = 1e9},
+                                grid, NULL),
                      STATUS_OK);
 }
 
@@ -93,7 +97,10 @@ static void test_flat_capacitor_is_exact(void **state)
     p->sides[SIDE_A_LOW].kind = p->sides[SIDE_A_HIGH].kind = SIDE_MIRROR;
     scene_box(p, "upper", 1.0, 0.0, width, 0.5 * gap, 15e-3, 0.0);
     scene_box(p, "lower", -1.0, 0.0, width, -17e-3, -0.5 * gap, 0.0);
-    assert_int_equal(plane_solve(&g, KIND, 1.0, 1, &s, NULL), STATUS_OK);
+    assert_int_equal(plane_solve(&g, KIND,
+                                 &(struct grid_request){.fineness = 1.0, .level = 1},
+                                 &s, NULL),
+                     STATUS_OK);
     for (int k = 0; k < 40; k++) {
         const struct vec2 at = {width * (0.5 + 0.49 * sin(2.385 * k)),
                                 0.49 * gap * sin(1.711 * k)};
@@ -133,14 +140,19 @@ static void test_facts_and_residual_are_of_a_good_solve(void **state)
     geometry_free(&g);
 }
 
-/* The residual is recomputed here from the stencils. */
+/* The residual is recomputed here from the stencils. Nodes with cut legs are corrected
+ * after the solve: they are off by the defect that was taken away, a small part. */
 static void test_every_free_node_satisfies_its_equation(void **state)
 {
     (void)state;
     struct geometry g;
     struct plane_solution s;
+    int cuts = 0;
     box_scene(&g);
-    assert_int_equal(plane_solve(&g, KIND, 1.0, 1, &s, NULL), STATUS_OK);
+    assert_int_equal(plane_solve(&g, KIND,
+                                 &(struct grid_request){.fineness = 1.0, .level = 1},
+                                 &s, NULL),
+                     STATUS_OK);
     for (int n = 0; n < s.grid.na * s.grid.nb; n++) {
         struct stencil e;
         double sum = 0.0, size = 0.0;
@@ -152,8 +164,12 @@ static void test_every_free_node_satisfies_its_equation(void **state)
             sum += e.weight[leg] * (end - s.phi[n]);
             size += e.weight[leg];
         }
-        assert_at_most(fabs(sum) / size, 1e-13);
+        const bool cut =
+            e.part[0] >= 0 || e.part[1] >= 0 || e.part[2] >= 0 || e.part[3] >= 0;
+        assert_at_most(fabs(sum) / size, cut ? 1e-4 : 1e-13);
+        cuts += cut;
     }
+    assert_true(cuts > 0);
     plane_solution_free(&s);
     geometry_free(&g);
 }

@@ -35,12 +35,14 @@ static void begin(struct bench *bench, double e, double b)
     scene_wall(p, SIDE_B_HIGH, volts, volts);
     scene_wall(m, SIDE_B_LOW, -amperes, -amperes);
     scene_wall(m, SIDE_B_HIGH, amperes, amperes);
-    assert_int_equal(
-        plane_solve(g, PLANE_ELECTRIC_ALONG, 0.5, 0, &bench->electric, NULL),
-        STATUS_OK);
-    assert_int_equal(
-        plane_solve(g, PLANE_MAGNETIC_ALONG, 0.5, 0, &bench->magnetic, NULL),
-        STATUS_OK);
+    assert_int_equal(plane_solve(g, PLANE_ELECTRIC_ALONG,
+                                 &(struct grid_request){.fineness = 0.5, .level = 0},
+                                 &bench->electric, NULL),
+                     STATUS_OK);
+    assert_int_equal(plane_solve(g, PLANE_MAGNETIC_ALONG,
+                                 &(struct grid_request){.fineness = 0.5, .level = 0},
+                                 &bench->magnetic, NULL),
+                     STATUS_OK);
     bench->view = (struct view){g,
                                 {[PLANE_ELECTRIC_ALONG] = &bench->electric,
                                  [PLANE_MAGNETIC_ALONG] = &bench->magnetic}};
@@ -263,7 +265,9 @@ static void test_particle_that_meets_a_part_is_lost_there(void **state)
     scene_begin(&g, 0.0, false);
     struct plane *p = scene_plane(&g, PLANE_ELECTRIC_ALONG, FROM, TO, -HALF, HALF);
     scene_box(p, "stop", 1.0, 20e-3, 25e-3, -3e-3, 3e-3, 0.0);
-    assert_int_equal(plane_solve(&g, PLANE_ELECTRIC_ALONG, 1.0, 0, &electric, NULL),
+    assert_int_equal(plane_solve(&g, PLANE_ELECTRIC_ALONG,
+                                 &(struct grid_request){.fineness = 1.0, .level = 0},
+                                 &electric, NULL),
                      STATUS_OK);
     bench.view.planes[PLANE_ELECTRIC_ALONG] = &electric;
     assert_int_equal(track_particle(&bench.view, &particle, FROM, TO, STEPS, &exit),

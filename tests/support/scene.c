@@ -50,6 +50,17 @@ struct plane *scene_plane(struct geometry *geometry, enum plane_kind kind, doubl
     return plane;
 }
 
+struct plane *scene_turned(struct geometry *geometry, double z_low, double z_high,
+                           double r_low, double r_high)
+{
+    struct plane *plane =
+        scene_plane(geometry, PLANE_ELECTRIC_TURNED, z_low, z_high, r_low, r_high);
+    plane->sides[SIDE_A_LOW].kind = plane->sides[SIDE_A_HIGH].kind = SIDE_MIRROR;
+    if (!(r_low > 0.0))
+        plane->sides[SIDE_B_LOW].kind = SIDE_MIRROR;
+    return plane;
+}
+
 static struct part *add_part(struct plane *plane, const char *name, double gain)
 {
     plane->parts =

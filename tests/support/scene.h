@@ -15,6 +15,11 @@ void scene_begin(struct geometry *geometry, double setting, bool is_current);
 struct plane *scene_plane(struct geometry *geometry, enum plane_kind kind, double a_low,
                           double a_high, double b_low, double b_high);
 
+/** A turned plane (z, r) with mirror sides at both ends in z and at r_low if that is the
+ *  axis; the other sides are walls at 0. */
+struct plane *scene_turned(struct geometry *geometry, double z_low, double z_high,
+                           double r_low, double r_high);
+
 /** Parts at gain times the supply. The pointer is valid until the next part. */
 struct part *scene_box(struct plane *plane, const char *name, double gain, double a_low,
                        double a_high, double b_low, double b_high, double rounding);
