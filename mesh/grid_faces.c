@@ -186,7 +186,7 @@ static bool conditions(const struct link *link, const struct interface *interfac
         const double base = n == 3 ? conductance : n == 2 ? -conductance : 0.0;
         if (side < 0)
             return false;
-        interface_values(interface, at, side, &matrix[n * INTERFACE_TERMS]);
+        interface_values(interface, at, side, &matrix[(size_t)n * INTERFACE_TERMS]);
         for (int m = 0; m < INTERFACE_TERMS; m++)
             right[m] -= base * matrix[n * INTERFACE_TERMS + m];
     }

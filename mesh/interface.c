@@ -95,8 +95,8 @@ bool interface_find(const struct plane *plane, struct vec2 at, double reach,
     for (size_t p = 0; p < plane->part_count; p++) {
         const struct part *part = &plane->parts[p];
         double distance = nearest;
-        struct interface frame;
-        int sides[2];
+        struct interface frame = {0};
+        int sides[2] = {0, 0};
         if (part_is_conductor(part))
             continue;
         find_in(&part->shape, at, &distance, &frame);

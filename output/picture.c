@@ -284,7 +284,7 @@ void picture_shorten(char *text, size_t most)
         if (count++ == most - 3)
             cut = byte;
     }
-    if (count > most)
+    if (cut != NULL && count > most)
         memcpy(cut, "...", sizeof "...");
 }
 

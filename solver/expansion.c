@@ -8,6 +8,9 @@
 
 enum { CIRCLE_POINTS = 64 };
 
+/* A centre field below this share of the largest on the circle is none. */
+#define CENTRE_SHARE 1e-9
+
 /* The analytic function of the plane at a point: E_x - i E_y, or B_y + i B_x. */
 static enum status analytic_at(const struct plane_solution *plane, struct vec2 at,
                                double value[2])
@@ -36,6 +39,7 @@ static void add_point(struct expansion *e, const double f[2], double angle)
 enum status expansion_of_plane(const struct plane_solution *plane, double radius,
                                struct expansion *expansion)
 {
+    double largest = 0.0;
     memset(expansion, 0, sizeof *expansion);
     expansion->radius = radius;
     for (int k = 0; k < CIRCLE_POINTS; k++) {
@@ -46,9 +50,12 @@ enum status expansion_of_plane(const struct plane_solution *plane, double radius
         if (status != STATUS_OK)
             return status;
         add_point(expansion, f, angle);
+        largest = fmax(largest, hypot(f[0], f[1]));
     }
     expansion->centre = expansion->real[0];
-    if (expansion->centre == 0.0)
+    /* Not decided by round-off: where the centre field vanishes by symmetry it must be
+     * found so on every grid. */
+    if (fabs(expansion->centre) <= CENTRE_SHARE * largest)
         return STATUS_SIZE;
     for (int n = 0; n < EXPANSION_TERMS; n++) {
         expansion->real[n] /= expansion->centre;

@@ -20,7 +20,8 @@ struct expansion {
 };
 
 /** Expansion on the circle of the given radius (m) about the origin, which must lie in
- *  free space within the plane (or its reflections): STATUS_SIZE otherwise.
+ *  free space within the plane (or its reflections): STATUS_SIZE otherwise, and if there
+ *  is no centre field to refer to.
  *  Order  that of the field; the discrete Fourier sum over the circle adds terms n >= 57
  *         only.
  *  Source discrete Cauchy integral, common practice. */

@@ -35,7 +35,7 @@ struct shares {
     double spread; /* of the distance to the same correction without the finest grid */
     double change; /* of the last change */
 };
-static const struct shares THREE = {2.0, 0.0, 0.033}, FOUR = {1.5, 0.1, 0.005};
+static const struct shares THREE = {2.0, 0.0, 0.02}, FOUR = {1.5, 0.1, 0.005};
 
 /* Value at h = 0 of a + b h^2. */
 static double second_order(double coarse, double fine)

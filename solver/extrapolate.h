@@ -21,7 +21,7 @@ struct estimate {
  *  h^2, h^3 is removed as well. The uncertainty is
  *   - two grids: their change;
  *   - three, measured order above 1/2, or changes that alternate but fall to a quarter:
- *     twice the correction by the h^3 term plus 0.033 of the last change; at orders
+ *     twice the correction by the h^3 term plus 0.02 of the last change; at orders
  *     below 2 at least 1.1 times the distance from the extrapolation with order 2 to that
  *     with the measured order (so a figure of truly lower order is covered);
  *   - four: the same of the three finest, but the sum is 1.5 times that correction, 0.1 of
@@ -29,8 +29,8 @@ struct estimate {
  *     last change;
  *   - else 1.5 times the larger change. Such a figure is unsettled unless its changes are
  *     small or halve.
- *  Not a bound: on figures with exact solutions about 96 of 100 lie inside (four grids:
- *  98), and the uncertainty is typically nine times the error
+ *  Not a bound: on figures with exact solutions about 97 of 100 lie inside (four grids:
+ *  98), and the uncertainty is typically ten times the error
  *  (tests/bench/bench_honesty.c). A correction by an h^4 term from four grids makes values
  *  worse: what is left after two terms is scatter.
  *  Values that are not finite give an infinite uncertainty and are never settled.

@@ -53,7 +53,7 @@ static void test_pure_second_order_is_measured(void **state)
     assert_close(e.order, 2.0, 1e-12, 0.0);
     assert_close(e.value, LIMIT, 1e-14, 0.0);
     /* Never less than a share of the last change. */
-    assert_close(e.uncertainty, 0.033 * fabs(v[2] - v[1]), 1e-7, 0.0); /* and noise */
+    assert_close(e.uncertainty, 0.02 * fabs(v[2] - v[1]), 1e-7, 0.0); /* and noise */
 }
 
 static void test_fourth_order_remainder_is_covered(void **state)
