@@ -6,7 +6,7 @@
 #include "shared/mem.h"
 #include "tests/support/assert_close.h"
 
-#define WORDS_MOST 10
+#define WORDS_MOST 16
 
 /* Parses "evengap" followed by the words of a line. */
 static enum status parse(const char *line, struct command *command,
