@@ -19,7 +19,7 @@ enum { LEVELS = 3 };
 
 /* Thickness of a film in gaps. Its effect on the charge is about as large; spacings ten
  * decades below the distance of the earth leave the solve untrusted. */
-#define THIN 2e-6
+#define THIN 6e-7
 
 static void open_all(struct plane *plane)
 {
@@ -45,15 +45,14 @@ static const struct figure *figure_of(const struct result *r, const char *name,
     return f;
 }
 
-/* Within the bound (relative) and within twice what is claimed: how often the claim itself
- * holds is counted by tests/bench/bench_honesty.c. */
+/* Within the bound (relative) and within what is claimed. */
 static void compare(const char *what, double got, double uncertainty, double want,
                     double bound)
 {
     print_message("  %-28s %.10g error %9.2e (%.0e) relative\n", what, got,
                   got / want - 1.0, uncertainty / fabs(want));
     assert_close(got, want, bound, 0.0);
-    assert_close(got, want, 0.0, 2.0 * uncertainty);
+    assert_close(got, want, 0.0, uncertainty);
 }
 
 /* Wire pair of radius a, distance d: lines of charge at +-c, c^2 = d^2/4 - a^2. */
